@@ -1,0 +1,27 @@
+//! The problem: an exactly Hermitian matrix, or a pair with a metric.
+//!
+//! Notation: A the matrix, M the metric, n the order, s the scale exponents.
+
+use crate::matrix::{Dense, ExactMatrix};
+
+/// A x = λ x, or A x = λ M x when there is a metric.
+#[derive(Clone, Debug)]
+pub struct Problem {
+    /// A, exactly Hermitian.
+    pub matrix: ExactMatrix,
+    /// M, exactly Hermitian; its definiteness is proved later, not assumed.
+    pub metric: Option<ExactMatrix>,
+}
+
+/// The problem in doubles: each entry of 2^−scale · A rounded to nearest.
+#[derive(Clone, Debug)]
+pub struct Rounded {
+    /// A · 2^−matrix_scale, to nearest, full (both triangles).
+    pub matrix: Dense,
+    /// Power of two taken out of A.
+    pub matrix_scale: i32,
+    /// M · 2^−metric_scale, to nearest.
+    pub metric: Option<Dense>,
+    /// Power of two taken out of M.
+    pub metric_scale: i32,
+}
