@@ -21,7 +21,11 @@ impl Dense {
 
     /// A complex matrix; both planes have the same shape.
     pub fn complex(re: DMatrix<f64>, im: DMatrix<f64>) -> Self {
-        assert_eq!(re.shape(), im.shape(), "planes of one matrix differ in shape");
+        assert_eq!(
+            re.shape(),
+            im.shape(),
+            "planes of one matrix differ in shape"
+        );
         Self { re, im: Some(im) }
     }
 

@@ -2,6 +2,8 @@
 
 pub mod dense;
 pub mod exact;
+pub mod kernels;
+pub mod lanes;
 
 pub use dense::Dense;
 pub use exact::ExactMatrix;

@@ -25,7 +25,10 @@ pub enum ExactReal {
 
 impl ExactReal {
     /// Exact zero.
-    pub const ZERO: Self = Self::Decimal { digits: 0, exponent: 0 };
+    pub const ZERO: Self = Self::Decimal {
+        digits: 0,
+        exponent: 0,
+    };
 
     /// The number as a ratio of integers; `None` when it is irrational.
     pub fn rational(&self) -> Option<RBig> {
