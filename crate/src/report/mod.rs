@@ -1,1 +1,9 @@
-//! (under construction)
+//! What the page, the files and the sheet say: view models, exports, the
+//! residual report.
+//!
+//! Every number in a view model is text already, by the rules of [`decimal`];
+//! the few plain doubles beside them place things in pictures and are never
+//! printed.
+
+pub mod decimal;
+pub mod spectrum;
