@@ -166,7 +166,7 @@ pub fn written(n: &IBig, place: i32) -> String {
 /// value · 2^scale is one exactly; else 17 significant digits of it.
 pub fn round_trip(value: f64, scale: i32) -> String {
     match scaled_double(value, scale) {
-        Some(x) if x == 0.0 => "0.0".to_owned(),
+        Some(0.0) => "0.0".to_owned(),
         Some(x) => format!("{x:?}"),
         None => match exact(value, scale) {
             Some(x) => significant(&x, 17, Rounding::Nearest),
