@@ -6,4 +6,5 @@
 //! printed.
 
 pub mod decimal;
+pub mod export;
 pub mod spectrum;
