@@ -109,6 +109,12 @@ pub fn significant(x: &RBig, digits: u32, rounding: Rounding) -> String {
     written(&n, place)
 }
 
+/// A figure for the page: with the true minus sign, which is as wide as a
+/// digit. Files keep the hyphen that other programs read.
+pub fn typeset(figure: &str) -> String {
+    figure.replace('-', "−")
+}
+
 /// A bound in two significant digits, never less than `bound`: `2.3e-15`.
 pub fn bound(bound: f64) -> String {
     match exact(bound, 0) {

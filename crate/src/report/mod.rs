@@ -6,5 +6,8 @@
 //! printed.
 
 pub mod decimal;
+pub mod exact_view;
 pub mod export;
+pub mod map;
 pub mod spectrum;
+pub mod vector;
