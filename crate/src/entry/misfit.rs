@@ -1,0 +1,128 @@
+//! What is wrong with rows that make no square matrix.
+
+use super::diagnostic::{count, Finding, Findings, Kind};
+use super::raw::RawTable;
+use super::repair::{Action, Repair};
+use super::settings::Settings;
+use super::span::Bytes;
+use std::collections::BTreeMap;
+
+/// Says which rows are ragged, or that the rectangle is not square.
+pub(crate) fn describe(table: &RawTable, settings: &Settings, findings: &mut Findings) {
+    let widths = table.widths();
+    let Some(&first) = widths.first() else { return };
+    if widths.iter().all(|&width| width == first) {
+        not_square(table, settings, findings);
+    } else {
+        ragged(table, &widths, findings);
+    }
+}
+
+fn ragged(table: &RawTable, widths: &[usize], findings: &mut Findings) {
+    let (wanted, reason) = wanted_width(widths);
+    for (row, &width) in widths.iter().enumerate() {
+        let expected = wanted(row);
+        if width == expected {
+            continue;
+        }
+        findings.push(
+            Finding::error(
+                Kind::Ragged,
+                format!(
+                    "Row {} has {}; {} expected, {reason}.",
+                    row + 1,
+                    count(width, "cell"),
+                    expected
+                ),
+            )
+            .at_row(row)
+            .span(row_bytes(table, row))
+            .expected(count(expected, "cell")),
+        );
+    }
+}
+
+/// The width wanted of each row, and why: a triangle when most rows follow one,
+/// else the width most rows have.
+fn wanted_width(widths: &[usize]) -> (Box<dyn Fn(usize) -> usize>, &'static str) {
+    let rows = widths.len();
+    let lower = widths
+        .iter()
+        .enumerate()
+        .filter(|&(row, &width)| width == row + 1)
+        .count();
+    let upper = widths
+        .iter()
+        .enumerate()
+        .filter(|&(row, &width)| width == rows - row)
+        .count();
+    let mut tally: BTreeMap<usize, usize> = BTreeMap::new();
+    for &width in widths {
+        *tally.entry(width).or_default() += 1;
+    }
+    let (&usual, &often) = tally
+        .iter()
+        .max_by_key(|&(width, times)| (times, width))
+        .unwrap_or((&0, &0));
+    // A first row of one cell is how a lower triangle begins, and little else.
+    if rows > 2 && widths[0] == 1 && lower >= often && lower >= upper {
+        return (Box::new(|row| row + 1), "as the rows form a lower triangle");
+    }
+    if rows > 2 && upper > often {
+        return (
+            Box::new(move |row| rows - row),
+            "as the rows form an upper triangle",
+        );
+    }
+    if often > 1 {
+        (Box::new(move |_| usual), "as in most rows")
+    } else {
+        let widest = widths.iter().copied().max().unwrap_or(0);
+        (Box::new(move |_| widest), "as in the longest row")
+    }
+}
+
+fn not_square(table: &RawTable, settings: &Settings, findings: &mut Findings) {
+    let (rows, cols) = (table.rows(), table.row(0).len());
+    let mut finding = Finding::error(
+        Kind::NotSquare,
+        format!(
+            "{} of {} make no square matrix.",
+            count(rows, "row"),
+            count(cols, "cell")
+        ),
+    )
+    .expected("as many rows as columns");
+    let repair = |label: &str, action| Repair::new(label, action, *settings);
+    if rows == cols + 1 {
+        finding = finding
+            .repair(repair("Drop the first row", Action::DropRow { row: 0 }))
+            .repair(repair(
+                "Drop the last row",
+                Action::DropRow { row: rows - 1 },
+            ));
+    } else if cols == rows + 1 {
+        finding = finding
+            .repair(repair(
+                "Drop the first column",
+                Action::DropColumn { col: 0 },
+            ))
+            .repair(repair(
+                "Drop the last column",
+                Action::DropColumn { col: cols - 1 },
+            ));
+    }
+    findings.push(finding);
+}
+
+/// The stretch of text from a row's first cell to its last.
+fn row_bytes(table: &RawTable, row: usize) -> Bytes {
+    let cells = table.row(row);
+    match (cells.first(), cells.last()) {
+        (Some(first), Some(last)) => Bytes {
+            start: first.span.start,
+            end: last.span.end,
+        },
+        _ => Bytes::default(),
+    }
+}

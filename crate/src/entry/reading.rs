@@ -1,0 +1,368 @@
+//! From the candidates that a text allows to the one reading that is taken, or
+//! to a question.
+
+use super::decimal;
+use super::diagnostic::{count, grouped, Finding, Findings, Kind};
+use super::labels::{self, Stripped};
+use super::question::{Choice, Preview, Question};
+use super::raw::RawTable;
+use super::recognise;
+use super::settings::{DecimalMark, Labels, Layout, Limits, Settings, Shape, SignedWords, Wanted};
+use super::{json, plain, shape, ReadOptions};
+
+/// A reading of the text: everything about it is settled but the numbers.
+pub(crate) struct Reading {
+    /// Every field is filled in.
+    pub settings: Settings,
+    pub stripped: Stripped,
+    pub shape: Shape,
+}
+
+/// What became of the candidates.
+pub(crate) struct Outcome {
+    pub reading: Option<Reading>,
+    pub question: Option<Question>,
+}
+
+/// Cells of a preview's corner, each way.
+const CORNER: usize = 4;
+
+/// The raw table of a text in the layout that the settings name.
+pub(crate) fn raw_table(source: &str, settings: &Settings, limits: &Limits) -> RawTable {
+    tokenise(source, settings, limits, &mut Findings::new(0)).unwrap_or_else(|| RawTable::new(0))
+}
+
+fn tokenise(
+    source: &str,
+    settings: &Settings,
+    limits: &Limits,
+    findings: &mut Findings,
+) -> Option<RawTable> {
+    let table = RawTable::new(limits.order);
+    match settings.layout.unwrap_or(Layout::Spaces) {
+        Layout::Json => json::read(source, table, findings),
+        layout => Some(plain::read(
+            source,
+            layout,
+            settings.signed_words.unwrap_or(SignedWords::Apart),
+            table,
+        )),
+    }
+}
+
+/// Weighs the readings the text allows.
+pub(crate) fn choose(source: &str, options: &ReadOptions, findings: &mut Findings) -> Outcome {
+    let candidates = recognise::candidates(source, &options.settings);
+    let mut fits: Vec<Reading> = Vec::new();
+    let mut first: Option<(Settings, RawTable)> = None;
+    for settings in &candidates {
+        let Some(table) = tokenise(source, settings, &options.limits, findings) else {
+            continue;
+        };
+        if too_large(&table, options, findings) {
+            return Outcome {
+                reading: None,
+                question: None,
+            };
+        }
+        let table = labels::without_blank_margins(table, source);
+        if !table.is_empty() {
+            collect(source, settings, &table, options, &mut fits);
+            first.get_or_insert((*settings, table));
+        }
+    }
+    if fits.is_empty() {
+        if let Some((settings, table)) = first {
+            return Outcome {
+                reading: misfit(source, settings, &table, options, findings),
+                question: None,
+            };
+        }
+        if !findings.has_errors() {
+            findings.push(
+                Finding::error(Kind::Empty, "There are no cells in the text.")
+                    .expected("rows of numbers"),
+            );
+        }
+        return Outcome {
+            reading: None,
+            question: None,
+        };
+    }
+    settle_runs(&mut fits, options.wanted);
+    if let ([fit], [_, _, ..]) = (fits.as_slice(), candidates.as_slice()) {
+        let others: Vec<&Settings> = candidates
+            .iter()
+            .filter(|other| !is_same(other, &fit.settings))
+            .collect();
+        findings.push(only_fit(fit, &others));
+    }
+    let question = ask(&fits, source, options);
+    let taken = question
+        .as_ref()
+        .and_then(|question| question.preferred)
+        .unwrap_or(0);
+    Outcome {
+        reading: Some(fits.swap_remove(taken)),
+        question,
+    }
+}
+
+/// Adds the readings that fit what is wanted.
+fn collect(
+    source: &str,
+    settings: &Settings,
+    table: &RawTable,
+    options: &ReadOptions,
+    fits: &mut Vec<Reading>,
+) {
+    let labels = match settings.labels {
+        Some(labels) => vec![labels],
+        None => labels::possible(table, source, &options.is_name),
+    };
+    for labels in labels {
+        let stripped = labelled(table, source, labels, options);
+        let shapes = match settings.shape {
+            Some(shape) => vec![shape],
+            None => shape::possible(&stripped.table.widths(), options.wanted),
+        };
+        let mut found = false;
+        for shape in shapes
+            .into_iter()
+            .filter(|&shape| fits_exactly(shape, &stripped.table.widths()))
+        {
+            let decimals = match settings.decimal {
+                Some(decimal) => vec![decimal],
+                None => decimal::possible(&stripped.table, source),
+            };
+            for decimal in decimals {
+                found = true;
+                let settings = resolved(settings, labels, decimal, shape);
+                if fits.iter().any(|fit| fit.settings == settings) {
+                    continue;
+                }
+                fits.push(Reading {
+                    settings,
+                    stripped: labelled(table, source, labels, options),
+                    shape,
+                });
+            }
+        }
+        if found {
+            return;
+        }
+    }
+}
+
+fn labelled(table: &RawTable, source: &str, labels: Labels, options: &ReadOptions) -> Stripped {
+    let mut stripped = labels::strip(table, source, labels);
+    stripped.table = match options.wanted {
+        Wanted::List => stripped.table.in_one_row(),
+        Wanted::Any => stripped.table,
+        _ => labels::without_blank_triangle(stripped.table, source),
+    };
+    stripped
+}
+
+fn resolved(settings: &Settings, labels: Labels, decimal: DecimalMark, shape: Shape) -> Settings {
+    Settings {
+        layout: settings.layout,
+        decimal: Some(decimal),
+        signed_words: Some(settings.signed_words.unwrap_or_default()),
+        shape: Some(shape),
+        labels: Some(labels),
+    }
+}
+
+/// Whether a shape, perhaps chosen for an earlier text, can hold these rows.
+fn fits_exactly(shape: Shape, widths: &[usize]) -> bool {
+    match shape {
+        Shape::Full => widths.iter().all(|&width| width == widths[0]),
+        _ => shape::possible(widths, Wanted::Square).contains(&shape),
+    }
+}
+
+fn too_large(table: &RawTable, options: &ReadOptions, findings: &mut Findings) -> bool {
+    let order = options.limits.order;
+    let (rows, cols) = (table.rows_seen, table.widest_seen);
+    // A run of cells may hold a whole matrix, so its length alone says nothing.
+    let run = rows == 1 || cols == 1;
+    let too_many = if run {
+        rows.max(cols) > order * order
+    } else {
+        rows > order + 1 || cols > order + 1
+    };
+    if too_many || (table.overflowed() && !run) {
+        findings.push(
+            Finding::error(
+                Kind::TooLarge,
+                format!(
+                    "The text has {} and {} in the widest; matrices up to order {} are worked here.",
+                    count(rows, "row"),
+                    count(cols, "cell"),
+                    grouped(order)
+                ),
+            )
+            .expected(format!("at most {} rows and columns", grouped(order))),
+        );
+        return true;
+    }
+    false
+}
+
+/// The reading of a table that makes no matrix of the kind wanted, for its
+/// cells, with what is wrong about it.
+fn misfit(
+    source: &str,
+    settings: Settings,
+    table: &RawTable,
+    options: &ReadOptions,
+    findings: &mut Findings,
+) -> Option<Reading> {
+    let labels = settings.labels.unwrap_or_else(|| {
+        labels::possible(table, source, &options.is_name)
+            .first()
+            .copied()
+            .unwrap_or_default()
+    });
+    let stripped = labelled(table, source, labels, options);
+    let decimal = settings
+        .decimal
+        .unwrap_or_else(|| decimal::possible(&stripped.table, source)[0]);
+    let settings = resolved(&settings, labels, decimal, Shape::Full);
+    super::misfit::describe(&stripped.table, &settings, findings);
+    Some(Reading {
+        settings,
+        stripped,
+        shape: Shape::Full,
+    })
+}
+
+/// One run of cells is a matrix only where nothing better is: beside a reading
+/// with rows and columns it is left out.
+fn settle_runs(fits: &mut Vec<Reading>, wanted: Wanted) {
+    let run = |fit: &Reading| {
+        matches!(
+            fit.shape,
+            Shape::Diagonal | Shape::PackedRows | Shape::PackedLower
+        )
+    };
+    if wanted == Wanted::Square && !fits.iter().all(run) {
+        fits.retain(|fit| !run(fit));
+    }
+}
+
+/// Whether a candidate became the reading with these settings.
+fn is_same(candidate: &Settings, taken: &Settings) -> bool {
+    candidate.layout == taken.layout
+        && candidate
+            .decimal
+            .is_none_or(|decimal| Some(decimal) == taken.decimal)
+        && candidate.signed_words.unwrap_or_default() == taken.signed_words.unwrap_or_default()
+}
+
+/// Says which of several readings was taken because it alone makes sense.
+fn only_fit(fit: &Reading, others: &[&Settings]) -> Finding {
+    let name = |settings: &Settings| {
+        let layout = settings.layout.map_or("", Layout::name);
+        let mark = match (settings.decimal, settings.signed_words) {
+            (Some(DecimalMark::Comma), _) => " with decimal commas",
+            (_, Some(SignedWords::Joined)) => " with 1 +2i as one number",
+            _ => "",
+        };
+        format!("{layout}{mark}")
+    };
+    let others: Vec<String> = others.iter().map(|settings| name(settings)).collect();
+    Finding::note(
+        Kind::Recognised,
+        format!(
+            "Read as {}; as {} it would make no square matrix.",
+            name(&fit.settings),
+            others.join(" or ")
+        ),
+    )
+}
+
+/// The question between readings, if there is one.
+fn ask(fits: &[Reading], source: &str, options: &ReadOptions) -> Option<Question> {
+    let run = fits.iter().any(|fit| fit.shape == Shape::Diagonal)
+        && options.wanted == Wanted::Square
+        && options.settings.shape.is_none();
+    if fits.len() == 1 && !run {
+        return None;
+    }
+    let choices: Vec<Choice> = fits
+        .iter()
+        .map(|fit| Choice {
+            label: label(fit, fits),
+            settings: fit.settings,
+            preview: preview(source, fit),
+        })
+        .collect();
+    let sentence = if fits.len() == 1 {
+        "One run of cells: is it the diagonal of a matrix?".to_owned()
+    } else {
+        format!(
+            "The text can be read in {} ways. Which is meant?",
+            fits.len()
+        )
+    };
+    Some(Question {
+        sentence,
+        choices,
+        preferred: None,
+    })
+}
+
+/// What tells this reading from the others.
+fn label(fit: &Reading, fits: &[Reading]) -> String {
+    let mut parts: Vec<&str> = Vec::new();
+    let differs =
+        |same: &dyn Fn(&Settings) -> bool| fits.iter().any(|other| !same(&other.settings));
+    if differs(&|other| other.layout == fit.settings.layout) {
+        parts.extend(fit.settings.layout.map(Layout::name));
+    }
+    if differs(&|other| other.decimal == fit.settings.decimal) {
+        parts.push(match fit.settings.decimal {
+            Some(DecimalMark::Comma) => "decimal commas",
+            Some(DecimalMark::PointWithGroups) => "commas group thousands",
+            _ => "decimal points",
+        });
+    }
+    if differs(&|other| other.signed_words == fit.settings.signed_words) {
+        parts.push(match fit.settings.signed_words {
+            Some(SignedWords::Joined) => "1 +2i is one number",
+            _ => "1 +2i is two cells",
+        });
+    }
+    if parts.is_empty() || differs(&|other| other.shape == fit.settings.shape) {
+        parts.push(fit.shape.name());
+    }
+    parts.join(", ")
+}
+
+fn preview(source: &str, fit: &Reading) -> Preview {
+    let table = &fit.stripped.table;
+    let (rows, cols) = shape::size(fit.shape, &table.widths());
+    let shape = match fit.shape {
+        Shape::Full if rows == cols => format!("order {}", grouped(rows)),
+        Shape::Full => format!("{} of {}", count(rows, "row"), count(cols, "cell")),
+        shape => format!("order {}, {}", grouped(rows), shape.name()),
+    };
+    let corner = (0..table.rows().min(CORNER))
+        .map(|row| {
+            table
+                .row(row)
+                .iter()
+                .take(CORNER)
+                .map(|cell| super::diagnostic::excerpt(cell.text(source)))
+                .collect()
+        })
+        .collect();
+    Preview {
+        rows,
+        cols,
+        shape,
+        corner,
+    }
+}
