@@ -19,20 +19,15 @@ pub struct MagnitudePicture {
     pub side: u32,
     /// Rows of the matrix that one cell stands for.
     pub block: u32,
-    /// Weight of the ink from 0 to 1 on a logarithmic scale from the smallest
-    /// to the largest magnitude, row by row; −1 where the entry is zero.
-    pub ink: Vec<f32>,
+    /// log₁₀ of the magnitude, row by row; NaN where the entry is zero.
+    pub decades: Vec<f32>,
     /// −1, 0 or 1: the sign of the real part, row by row.
     pub signs: Vec<i8>,
     /// The largest magnitude.
     pub largest: String,
-    /// The magnitude at the light end of the scale.
+    /// The smallest magnitude that is not zero.
     pub smallest: String,
 }
-
-/// Decades of magnitude the scale spans at most; what is smaller is drawn as
-/// faint as that.
-const DECADES: f64 = 18.0;
 
 /// Draws `matrix`; entries are entry · 2^`scale`. Cost: O(n²).
 pub fn picture(matrix: &Dense, scale: i32) -> MagnitudePicture {
@@ -67,26 +62,21 @@ pub fn picture(matrix: &Dense, scale: i32) -> MagnitudePicture {
         .filter(|size| *size > 0.0)
         .fold(largest, f64::min);
     // Pictures only: the logarithm's last bit may differ between machines.
-    let top = largest.log10();
-    let span = if largest > 0.0 {
-        (top - least.log10()).clamp(1.0, DECADES)
-    } else {
-        1.0
-    };
-    let ink = sizes
+    let shift = f64::from(scale) * std::f64::consts::LOG10_2;
+    let decades = sizes
         .iter()
         .map(|size| {
             if *size == 0.0 {
-                -1.0
+                f32::NAN
             } else {
-                (1.0 - (top - size.log10()) / span).clamp(0.0, 1.0) as f32
+                (size.log10() + shift) as f32
             }
         })
         .collect();
     MagnitudePicture {
         side: side as u32,
         block: block as u32,
-        ink,
+        decades,
         signs,
         largest: scaled_magnitude(largest, scale),
         smallest: scaled_magnitude(least, scale),
@@ -114,9 +104,12 @@ mod tests {
         let drawn = picture(&Dense::real(re), 0);
         assert_eq!((drawn.side, drawn.block), (134, 3));
         let corner = (133 * 134) as usize;
-        assert_eq!((drawn.ink[corner], drawn.signs[corner]), (1.0, -1));
-        assert_eq!((drawn.ink[0], drawn.signs[0]), (0.0, 1));
-        assert_eq!(drawn.ink[1], -1.0);
+        assert_eq!(
+            (drawn.decades[corner].round(), drawn.signs[corner]),
+            (1.0, -1)
+        );
+        assert_eq!((drawn.decades[0].round(), drawn.signs[0]), (-3.0, 1));
+        assert!(drawn.decades[1].is_nan());
         assert_eq!(
             (drawn.largest.as_str(), drawn.smallest.as_str()),
             ("8.00", "0.00100")
@@ -124,9 +117,12 @@ mod tests {
     }
 
     #[test]
-    fn a_zero_matrix_has_no_ink() {
+    fn a_zero_matrix_is_blank() {
         let drawn = picture(&Dense::real(DMatrix::zeros(2, 2)), 0);
-        assert!(drawn.ink.iter().all(|ink| *ink == -1.0), "{drawn:?}");
+        assert!(
+            drawn.decades.iter().all(|decade| decade.is_nan()),
+            "{drawn:?}"
+        );
         assert_eq!(drawn.largest, "0");
     }
 }

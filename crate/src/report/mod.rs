@@ -11,3 +11,4 @@ pub mod export;
 pub mod map;
 pub mod spectrum;
 pub mod vector;
+pub mod working;

@@ -9,7 +9,7 @@ use crate::matrix::Dense;
 /// One component of a vector.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
 #[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
-pub struct Component {
+pub struct VectorComponent {
     /// The row's label, or its number.
     pub label: String,
     /// The component as printed.
@@ -28,7 +28,7 @@ pub struct VectorView {
     /// Index of its eigenvalue, from 1.
     pub index: u32,
     /// Its components, in the order of the rows.
-    pub components: Vec<Component>,
+    pub components: Vec<VectorComponent>,
     /// What its length and phase are made to be.
     pub convention: String,
     /// What is known of its angle to the true eigenvector.
@@ -36,7 +36,12 @@ pub struct VectorView {
 }
 
 /// Column `col` of `vectors` (from 0), figures to `decimals` places.
-pub fn components(vectors: &Dense, col: usize, labels: &[String], decimals: u32) -> Vec<Component> {
+pub fn components(
+    vectors: &Dense,
+    col: usize,
+    labels: &[String],
+    decimals: u32,
+) -> Vec<VectorComponent> {
     let complex = vectors.is_complex();
     let parts = |row: usize| {
         let im = vectors.im.as_ref().map_or(0.0, |im| im[(row, col)]);
@@ -50,7 +55,7 @@ pub fn components(vectors: &Dense, col: usize, labels: &[String], decimals: u32)
     (0..vectors.rows())
         .map(|row| {
             let (re, im) = parts(row);
-            Component {
+            VectorComponent {
                 label: labels
                     .get(row)
                     .cloned()
