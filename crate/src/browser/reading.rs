@@ -6,6 +6,7 @@ use serde::{Deserialize, Serialize};
 use tsify::Tsify;
 
 use super::document::{Adjustment, ProblemDocument};
+use crate::report::map::MagnitudePicture;
 
 /// The reading of a whole document.
 #[derive(Clone, Debug, Serialize, Deserialize, Tsify)]
@@ -55,7 +56,7 @@ pub struct TextReading {
     pub cells: Option<Vec<Vec<Cell>>>,
     /// Magnitudes for the map.
     #[tsify(optional)]
-    pub map: Option<MagnitudeMap>,
+    pub map: Option<MagnitudePicture>,
 }
 
 /// One typed cell and where it stands.
@@ -129,6 +130,8 @@ pub struct Answer {
     pub key: String,
     /// The answer in words, with what the first cells would then be.
     pub label: String,
+    /// Whether it is the one in force.
+    pub chosen: bool,
 }
 
 /// Mirrored cells that disagree.
@@ -186,25 +189,43 @@ pub struct ParameterDiagnostic {
     pub message: String,
 }
 
-/// Magnitudes of a matrix for drawing, at most a few hundred cells a side.
-///
-/// A larger matrix is gathered into blocks, each standing for its largest
-/// entry. For the eye only: nothing is computed from it.
+/// Which text of the document is meant.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize, Tsify)]
+#[serde(rename_all = "lowercase")]
+pub enum Which {
+    /// The matrix.
+    Matrix,
+    /// The metric.
+    Metric,
+}
+
+/// Replacements of stretches of one text, all counted in the text as it was.
 #[derive(Clone, Debug, Serialize, Deserialize, Tsify)]
-#[serde(rename_all = "camelCase")]
-pub struct MagnitudeMap {
-    /// Cells a side.
-    pub side: u32,
-    /// Rows of the matrix that one cell of the map stands for.
-    pub block: u32,
-    /// log₁₀ of the magnitude, row by row; `null` (NaN) where it is zero.
-    pub decades: Vec<f32>,
-    /// −1, 0 or 1: the sign of the real part, row by row.
-    pub signs: Vec<i8>,
-    /// Largest magnitude, as the scale's label.
-    pub largest: String,
-    /// Smallest magnitude that is not zero, as the scale's label.
-    pub smallest: String,
+pub struct TextEdits {
+    /// In order of position, without overlap.
+    pub edits: Vec<TextEdit>,
+}
+
+/// One replacement.
+#[derive(Clone, Debug, Serialize, Deserialize, Tsify)]
+pub struct TextEdit {
+    /// Start of the stretch.
+    pub from: u32,
+    /// End of the stretch.
+    pub to: u32,
+    /// What takes its place.
+    pub insert: String,
+}
+
+/// Cells to set, from one cell on to the right and down.
+#[derive(Clone, Debug, Serialize, Deserialize, Tsify)]
+pub struct CellBlock {
+    /// Row of the first cell, from 0.
+    pub row: u32,
+    /// Its column, from 0.
+    pub col: u32,
+    /// The texts, row by row.
+    pub cells: Vec<Vec<String>>,
 }
 
 /// A document opened from a file, a link or a repair, or why it was not.

@@ -50,6 +50,19 @@ export type Work =
 
 export const work = signal<Work>({ state: 'starting' });
 
+/** A sentence to the person, shown until dismissed or replaced. */
+export interface Notice {
+  readonly tone: 'information' | 'trouble';
+  readonly text: string;
+}
+
+export const notice = signal<Notice | null>(null);
+
+/** Says something went wrong, in a sentence. */
+export function reportTrouble(reason: unknown): void {
+  notice.value = { tone: 'trouble', text: reason instanceof Error ? reason.message : String(reason) };
+}
+
 /** What is picked out across sections: an eigenvalue and a ledger entry, from 0. */
 export const chosenEigenvalue = signal<number | null>(null);
 export const chosenEntry = signal<number | null>(null);

@@ -75,10 +75,10 @@ function isTrap(reason: unknown): boolean {
  *
  * @throws Ended when the worker was ended meanwhile; otherwise what the module threw.
  */
-export async function withWorkbench<T>(use: (bench: RemoteWorkbench) => Promise<T>): Promise<T> {
+export async function withWorkbench<T>(act: (bench: RemoteWorkbench) => Promise<T>): Promise<T> {
   const mine = await current();
   try {
-    return await Promise.race([use(mine.bench), mine.ended]);
+    return await Promise.race([act(mine.bench), mine.ended]);
   } catch (reason) {
     if (isTrap(reason)) {
       await endWorker();

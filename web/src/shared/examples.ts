@@ -1,0 +1,51 @@
+/** The example problems that ship with the page, in the order of their files. */
+import { notice, replaceDocument, sheet } from './store';
+import { withWorkbench } from './worker';
+
+const files = import.meta.glob<string>('../../../www-examples/*.json', {
+  query: '?raw',
+  import: 'default',
+  eager: true,
+});
+
+export interface Example {
+  readonly key: string;
+  readonly title: string;
+  readonly json: string;
+}
+
+export const examples: readonly Example[] = Object.entries(files)
+  .sort(([a], [b]) => a.localeCompare(b, 'en'))
+  .map(([path, json]) => ({
+    key: path.replace(/^.*\/|\.json$/g, ''),
+    title: (JSON.parse(json) as { title: string }).title,
+    json,
+  }));
+
+/** Revision of the document when the first visit's example was put there. */
+let firstExampleRevision: number | null = null;
+
+/** Whether the page still shows the example of a first visit, as it came. */
+export function isUntouchedExample(): boolean {
+  return firstExampleRevision === sheet.value.revision;
+}
+
+async function open(example: Example): Promise<void> {
+  const opened = await withWorkbench((bench) => bench.open_file(new TextEncoder().encode(example.json)));
+  if (opened.outcome === 'document') replaceDocument(opened.document);
+  else if (opened.outcome === 'refused') notice.value = { tone: 'trouble', text: opened.reason };
+}
+
+/** Opens the example of that key in place of the document. */
+export async function openExample(key: string): Promise<void> {
+  const example = examples.find((candidate) => candidate.key === key);
+  if (example !== undefined) await open(example);
+}
+
+/** What a first visit opens on. */
+export async function openFirstExample(): Promise<void> {
+  const [example] = examples;
+  if (example === undefined) return;
+  await open(example);
+  firstExampleRevision = sheet.value.revision;
+}

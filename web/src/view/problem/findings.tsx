@@ -1,0 +1,153 @@
+/** What was found in a text: diagnostics, repairs, questions and choices. */
+import type {
+  Adjustment,
+  Diagnostic,
+  Disagreements,
+  Question,
+  Repair,
+  TextReading,
+} from '../../shared/generated/eigenledger';
+
+const LISTED = 12;
+
+function placeOf({ row, col }: Diagnostic): string {
+  if (row === undefined) return 'whole text';
+  return col === undefined ? `row ${String(row)}` : `row ${String(row)}, column ${String(col)}`;
+}
+
+const SEVERITY_WORDS = { error: 'to mend', warning: 'look here', note: 'noted' } as const;
+
+function DiagnosticList(props: {
+  reading: TextReading;
+  onShow: (from: number, to: number) => void;
+  onRepair: (repair: Repair) => void;
+}) {
+  const { diagnostics, diagnosticsLeftOut } = props.reading;
+  const shown = diagnostics.slice(0, LISTED);
+  const more = diagnostics.length - shown.length + diagnosticsLeftOut;
+  if (shown.length === 0) return null;
+  return (
+    <ul class="findings" aria-label="Found in the text">
+      {shown.map((diagnostic, index) => (
+        <li key={index} class={diagnostic.severity}>
+          <button type="button" class="quiet place" onClick={() => { props.onShow(diagnostic.from, diagnostic.to); }}>
+            {placeOf(diagnostic)}
+          </button>
+          <span class="weight">{SEVERITY_WORDS[diagnostic.severity]}</span>
+          <span class="sentence">{diagnostic.message}</span>
+          <span class="repairs">
+            {diagnostic.repairs.map((repair) => (
+              <button key={repair.key} type="button" onClick={() => { props.onRepair(repair); }}>
+                {repair.label}
+              </button>
+            ))}
+          </span>
+        </li>
+      ))}
+      {more > 0 && <li class="note">and {more} more of the kind</li>}
+    </ul>
+  );
+}
+
+function Asked({ question, onAnswer }: { question: Question; onAnswer: (key: string) => void }) {
+  return (
+    <fieldset class="question">
+      <legend>{question.text}</legend>
+      {question.answers.map(({ key, label, chosen }) => (
+        <button key={key} type="button" aria-pressed={chosen} onClick={() => { onAnswer(key); }}>
+          {label}
+        </button>
+      ))}
+    </fieldset>
+  );
+}
+
+const ADJUSTMENTS: readonly { key: Adjustment; label: string }[] = [
+  { key: 'lower', label: 'take the lower triangle' },
+  { key: 'upper', label: 'take the upper triangle' },
+  { key: 'mean', label: 'take the mean of both' },
+];
+
+function Disagreeing(props: { disagreements: Disagreements; onAdjust: (choice: Adjustment) => void }) {
+  const { total, pairs, roundingSized, chosen } = props.disagreements;
+  return (
+    <fieldset class="question">
+      <legend>
+        {total === 1 ? 'One pair of mirrored cells disagrees.' : `${String(total)} pairs of mirrored cells disagree.`}{' '}
+        {roundingSized ? 'The differences are no larger than rounding errors.' : ''}
+      </legend>
+      <div class="pairs-scroll">
+        <table class="pairs">
+          <thead>
+            <tr>
+              <th scope="col">row, column</th>
+              <th scope="col">below the diagonal</th>
+              <th scope="col">above, mirrored</th>
+              <th scope="col">apart by</th>
+            </tr>
+          </thead>
+          <tbody>
+            {pairs.map((pair) => (
+              <tr key={`${String(pair.row)},${String(pair.col)}`}>
+                <td>
+                  {pair.row}, {pair.col}
+                </td>
+                <td class="digits">{pair.lower}</td>
+                <td class="digits">{pair.upper}</td>
+                <td class="digits">{pair.difference}</td>
+              </tr>
+            ))}
+          </tbody>
+        </table>
+      </div>
+      {pairs.length < total && <p class="soft">The first {pairs.length} are listed.</p>}
+      <div class="row">
+        {ADJUSTMENTS.map(({ key, label }) => (
+          <button key={key} type="button" aria-pressed={chosen === key} onClick={() => { props.onAdjust(key); }}>
+            {label}
+          </button>
+        ))}
+      </div>
+      <p class="soft">The choice is part of the problem: it is kept in the file and entered in the ledger.</p>
+    </fieldset>
+  );
+}
+
+function summaryOf(reading: TextReading): string {
+  const parts = [reading.layout];
+  if (reading.rows > 0) {
+    parts.push(
+      reading.rows === reading.cols
+        ? `order ${String(reading.rows)}`
+        : `${String(reading.rows)} rows of up to ${String(reading.cols)} cells`,
+      reading.complex ? 'complex' : 'real',
+    );
+  }
+  if (reading.tolerances.length > 0) {
+    parts.push(
+      reading.tolerances.length === 1
+        ? 'one entry with a tolerance'
+        : `${String(reading.tolerances.length)} entries with tolerances`,
+    );
+  }
+  return parts.filter((part) => part !== '').join('; ');
+}
+
+/** Everything said about one text, under its editor. */
+export function Findings(props: {
+  reading: TextReading;
+  onShow: (from: number, to: number) => void;
+  onRepair: (repair: Repair) => void;
+  onAnswer: (key: string) => void;
+  onAdjust: (choice: Adjustment) => void;
+}) {
+  const { reading } = props;
+  return (
+    <div aria-live="polite" class="reading">
+      <p class="soft">Read as: {summaryOf(reading)}</p>
+      {reading.question && <Asked question={reading.question} onAnswer={props.onAnswer} />}
+      <DiagnosticList reading={reading} onShow={props.onShow} onRepair={props.onRepair} />
+      {reading.disagreements && <Disagreeing disagreements={reading.disagreements} onAdjust={props.onAdjust} />}
+    </div>
+  );
+}

@@ -1,0 +1,75 @@
+/** The sheet, its masthead and the foot line. */
+import { notice, outdated } from '../shared/store';
+import { FootLine } from './foot';
+import { sections, type SectionEntry } from './sections';
+
+function Section({ entry }: { entry: SectionEntry }) {
+  const stale = entry.derived && outdated.value;
+  const Body = entry.component;
+  return (
+    <section id={entry.id} aria-labelledby={`${entry.id}-heading`} class={stale ? 'outdated' : ''} aria-busy={stale}>
+      <div class="section-heading">
+        <h2 id={`${entry.id}-heading`}>{entry.heading}</h2>
+        {stale && <span class="soft">of the text before the last change</span>}
+      </div>
+      <div class="section-body">
+        <Body />
+      </div>
+    </section>
+  );
+}
+
+function Notice() {
+  const current = notice.value;
+  return (
+    <div role="status" aria-live="polite" class="notice-place">
+      {current !== null && (
+        <div class={`notice ${current.tone === 'trouble' ? 'warn' : ''}`}>
+          <span>{current.text}</span>
+          <button type="button" class="quiet" onClick={() => { notice.value = null; }}>
+            Dismiss
+          </button>
+        </div>
+      )}
+    </div>
+  );
+}
+
+export function Shell() {
+  return (
+    <>
+      <header class="masthead">
+        <a class="name" href="#problem" onClick={goTo('problem')}>
+          Eigenledger
+        </a>
+        <nav aria-label="Sections">
+          <ul>
+            {sections.map(({ id, heading }) => (
+              <li key={id}>
+                <a href={`#${id}`} onClick={goTo(id)}>
+                  {heading}
+                </a>
+              </li>
+            ))}
+          </ul>
+        </nav>
+      </header>
+      <Notice />
+      <main class="sheet">
+        {sections.map((entry) => (
+          <Section key={entry.id} entry={entry} />
+        ))}
+      </main>
+      <FootLine />
+    </>
+  );
+}
+
+/** The fragment belongs to the problem's link, so a jump must not write to it. */
+function goTo(id: string) {
+  return (event: Event) => {
+    event.preventDefault();
+    document.getElementById(id)?.scrollIntoView();
+    document.getElementById(`${id}-heading`)?.focus();
+  };
+}
