@@ -1,1 +1,221 @@
-//! (under construction)
+//! Proof: enclosures of every eigenvalue of the typed problem.
+//!
+//! The stage takes any square X and any real Λ, and asks nothing of where they
+//! came from: a poor approximation costs tightness, never truth. It imports
+//! numbers, matrices, the problem, the plain approximation and the control,
+//! and nothing of the reduction or the iteration.
+//!
+//! The theorems are stated where they are used: [`Theorem`] lists them.
+//!
+//! What is *not* proved: the processor's and compiler's conformance to IEEE 754
+//! binary64 with round to nearest; the model behind the matrix.
+
+mod diagonal;
+mod enclosure;
+mod frame;
+mod norms;
+mod proof;
+mod residual;
+mod spectrum;
+
+#[cfg(test)]
+mod tests;
+
+pub use enclosure::{Cluster, Enclosure, Theorem};
+pub use proof::{Condition, ConditionKind, Count, Level, Proof, Verdict};
+
+use crate::control::{Control, Flow, Stage};
+use crate::num::figure;
+use crate::num::{Dyadic, Upper};
+use crate::pairs::Approximation;
+use crate::problem::Problem;
+
+use frame::{Frame, FrameError};
+use residual::Residual;
+use spectrum::Spectrum;
+
+/// Proves what it can of `problem` with the help of `approximation`.
+///
+/// Never fails: a condition that is not met is recorded in the proof, which
+/// falls back to the best weaker statement. A cancelled run returns what was
+/// proven before. Cost by level: see [`Level`].
+pub fn prove(
+    problem: &Problem,
+    approximation: &Approximation,
+    level: Level,
+    control: &mut dyn Control,
+) -> Proof {
+    let order = problem.matrix.order();
+    let mut conditions = Vec::new();
+    let frame = match Frame::new(problem, approximation) {
+        Err(FrameError::Shape) => {
+            conditions.push(Condition::new(
+                ConditionKind::Usable,
+                Verdict::Refuted,
+                None,
+                format!("The approximation is not of order {order}; the proof starts from the matrix alone."),
+            ));
+            Frame::without_vectors(problem)
+        }
+        other => other,
+    };
+    let frame = match frame {
+        Ok(frame) => frame,
+        Err(reason) => {
+            conditions.push(unusable(reason));
+            return Proof::nothing(order, conditions);
+        }
+    };
+    quick(problem, frame, conditions, level, control)
+}
+
+fn unusable(reason: FrameError) -> Condition {
+    match reason {
+        FrameError::MetricDiagonal(i) => Condition::new(
+            ConditionKind::Nonsingular,
+            Verdict::Refuted,
+            None,
+            format!("The metric is not positive definite: its diagonal entry in row {} is not positive.", i + 1),
+        ),
+        FrameError::Shape | FrameError::NotFinite => Condition::new(
+            ConditionKind::Usable,
+            Verdict::Undecided,
+            None,
+            "An entry has no finite value in double precision at the matrix's scale.".to_string(),
+        ),
+    }
+}
+
+/// Significant bits given to typed eigenvalues that are no binary fractions.
+const TYPED_BITS: u32 = 120;
+
+/// The quick certificate, with the matrix alone as the last resort.
+fn quick(
+    problem: &Problem,
+    mut frame: Frame,
+    mut conditions: Vec<Condition>,
+    level: Level,
+    control: &mut dyn Control,
+) -> Proof {
+    let order = frame.order;
+    let mut residual = residual::measure(&mut frame);
+    if residual.spectrum(&frame).is_none() {
+        conditions.push(nonsingular(
+            &residual,
+            "the proof starts from the matrix alone",
+        ));
+        if let Ok(mut bare) = Frame::without_vectors(problem) {
+            residual = residual::measure(&mut bare);
+            frame = bare;
+        }
+    }
+    let Some(mut spectrum) = residual.spectrum(&frame) else {
+        conditions.push(nonsingular(&residual, "nothing is proven"));
+        return Proof::nothing(order, conditions);
+    };
+    spectrum.ascend();
+    diagonal::tighten(problem, &mut spectrum, frame.scale(), TYPED_BITS);
+    conditions.push(nonsingular(&residual, ""));
+    conditions.extend(radii(&residual, &frame));
+    let mut proof = Proof::new(Level::Quick, spectrum.finish(frame.scale()), conditions);
+    proof.push(separation(&proof));
+    if control.progress(Stage::Prove, 1.0) == Flow::Cancel || level == Level::Quick {
+        return proof;
+    }
+    proof
+}
+
+impl Residual {
+    /// The linear statements; `None` unless φ < 1 is proven.
+    fn spectrum(&self, frame: &Frame) -> Option<Spectrum> {
+        let radius = self.radius.exact()?;
+        let values = frame
+            .values
+            .iter()
+            .map(|&value| Dyadic::from_f64(value))
+            .collect::<Option<_>>()?;
+        let radii = self.columns.iter().map(|radius| radius.exact()).collect();
+        Some(Spectrum::linear(values, &radius, radii))
+    }
+}
+
+fn nonsingular(residual: &Residual, otherwise: &str) -> Condition {
+    let defect = residual.defect.exact();
+    let proved = residual.defect.one_minus() > 0.0;
+    let (verdict, sentence) = match (&defect, proved) {
+        (Some(defect), true) => (
+            Verdict::Proved,
+            format!(
+                "‖XᴴMX − I‖ ≤ {}: X is nonsingular and the metric positive definite.",
+                figure::at_most(defect)
+            ),
+        ),
+        (Some(defect), false) => (
+            Verdict::Undecided,
+            format!(
+                "‖XᴴMX − I‖ is only known to be at most {}; {otherwise}.",
+                figure::at_most(defect)
+            ),
+        ),
+        (None, _) => (
+            Verdict::Undecided,
+            format!("XᴴMX is not finite; {otherwise}."),
+        ),
+    };
+    Condition::new(ConditionKind::Nonsingular, verdict, defect, sentence)
+}
+
+fn radii(residual: &Residual, frame: &Frame) -> Vec<Condition> {
+    let bound = |bound: Upper| bound.exact().map(|bound| bound.scaled(frame.scale()));
+    let radius = bound(residual.radius);
+    let input = bound(residual.input_loss);
+    let text = |bound: &Option<Dyadic>| {
+        bound
+            .as_ref()
+            .map_or("nothing known".to_string(), figure::at_most)
+    };
+    vec![
+        Condition::new(
+            ConditionKind::Radius,
+            Verdict::Proved,
+            radius.clone(),
+            format!("Every eigenvalue lies within {} of its approximation.", text(&radius)),
+        ),
+        Condition::new(
+            ConditionKind::InputRounding,
+            Verdict::Proved,
+            input.clone(),
+            format!(
+                "Of that, {} allows for the typed entries being rounded to doubles: the typed matrix is meant.",
+                text(&input)
+            ),
+        ),
+    ]
+}
+
+fn separation(proof: &Proof) -> Condition {
+    let clusters = proof.clusters();
+    let gap = clusters
+        .iter()
+        .filter_map(|cluster| cluster.gap())
+        .cloned()
+        .reduce(Dyadic::min);
+    let single = clusters
+        .iter()
+        .filter(|cluster| cluster.count() == 1)
+        .count();
+    let verdict = if single == proof.order() {
+        Verdict::Proved
+    } else {
+        Verdict::Undecided
+    };
+    let sentence = match &gap {
+        Some(gap) => format!(
+            "{single} of {} eigenvalues are proven apart from their neighbours; no gap proven is below {}.",
+            proof.order(),
+            figure::at_least(gap)
+        ),
+        None => format!("{single} of {} eigenvalues are proven apart from their neighbours.", proof.order()),
+    };
+    Condition::new(ConditionKind::Separation, verdict, gap, sentence)
+}
