@@ -27,6 +27,7 @@ pub mod problem;
 pub mod prove;
 pub mod reduce;
 pub mod report;
+pub mod solve;
 
 #[cfg(target_arch = "wasm32")]
 pub mod browser;

@@ -1,6 +1,26 @@
-//! Approximate eigenpairs. They carry no bound: only `prove` can give one.
+//! Approximate eigenpairs from a reduction and its iteration. They carry no
+//! bound: only `prove` can give one.
+//!
+//! Notation: T = Z Λ Zᵀ the tridiagonal form, X = L⁻ᴴ Q D Z the vectors wanted
+//! (Q the reflectors, D the phases, L the metric's factor).
+//!
+//! *Phase convention.* Of each vector, the component of largest modulus is real
+//! and positive; among components whose moduli differ by less than one part in
+//! 2²⁰ (a tie, up to rounding) the first one counts. Its imaginary part is
+//! exactly zero.
 
+mod back;
+mod convention;
+mod rotations;
+
+#[cfg(test)]
+mod tests;
+
+use crate::control::{Control, Flow, Stage};
+use crate::iterate::Iteration;
 use crate::matrix::Dense;
+use crate::reduce::Reduction;
+use std::fmt;
 
 /// Approximate eigenpairs of the *scaled* problem (see
 /// [`crate::problem::Rounded`]); λ = value · 2^`scale`.
@@ -14,4 +34,79 @@ pub struct Approximation {
     /// λ of the typed problem is value · 2^scale
     /// (scale = matrix_scale − metric_scale).
     pub scale: i32,
+}
+
+/// Why there are no vectors.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum PairsError {
+    /// The iteration belongs to a matrix of another order.
+    Mismatch {
+        /// Rows of the reduction.
+        reduction: usize,
+        /// Values of the iteration.
+        iteration: usize,
+    },
+    /// Cancelled by the caller.
+    Cancelled,
+}
+
+impl fmt::Display for PairsError {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Self::Mismatch {
+                reduction,
+                iteration,
+            } => write!(
+                f,
+                "The iteration has {iteration} values but the reduction {reduction} rows; give \
+                 the iteration of this reduction."
+            ),
+            Self::Cancelled => write!(f, "Cancelled while the vectors were computed."),
+        }
+    }
+}
+
+impl std::error::Error for PairsError {}
+
+/// Eigenpairs, ascending, with vectors in the stated phase.
+///
+/// # Errors
+/// [`PairsError`]. Cost: back-transformation 2·n³ operations (8·n³ complex),
+/// and n³ (4·n³) more for a pair, besides the vectors of T.
+pub fn pairs(
+    reduction: &Reduction,
+    iteration: &Iteration,
+    control: &mut dyn Control,
+) -> Result<Approximation, PairsError> {
+    let order = reduction.order();
+    if iteration.values.len() != order {
+        return Err(PairsError::Mismatch {
+            reduction: order,
+            iteration: iteration.values.len(),
+        });
+    }
+    let ascending = ascending(&iteration.values);
+    let values: Vec<f64> = ascending.iter().map(|at| iteration.values[*at]).collect();
+    let on = |control: &mut dyn Control, done: f64| match control.progress(Stage::Pairs, done) {
+        Flow::Cancel => Err(PairsError::Cancelled),
+        Flow::Continue => Ok(()),
+    };
+    on(control, 0.0)?;
+    let basis = rotations::vectors(&reduction.tridiagonal, iteration, &ascending);
+    on(control, 0.5)?;
+    let mut vectors = back::transform(reduction, basis);
+    convention::fix_phases(&mut vectors);
+    on(control, 1.0)?;
+    Ok(Approximation {
+        values,
+        vectors,
+        scale: reduction.scale,
+    })
+}
+
+/// Positions of the values in ascending order; equal ones keep their order.
+fn ascending(values: &[f64]) -> Vec<usize> {
+    let mut order: Vec<usize> = (0..values.len()).collect();
+    order.sort_by(|a, b| values[*a].total_cmp(&values[*b]));
+    order
 }

@@ -4,6 +4,7 @@ pub mod dense;
 pub mod exact;
 pub mod kernels;
 pub mod lanes;
+pub mod norms;
 
 pub use dense::Dense;
 pub use exact::ExactMatrix;

@@ -1,0 +1,359 @@
+//! A reduction in progress: a matrix that is tridiagonal up to a column and
+//! full beyond it, and the step that moves the boundary on by one column.
+//!
+//! Notation: A the matrix, S its trailing part, H = I − τ v vᴴ the reflector of
+//! a column, w = τ S v − (τ²/2)(vᴴ S v) v, so that H S H = S − v wᴴ − w vᴴ.
+
+use super::pass::{self, updated, updated_complex, Planes, Split};
+use super::reflector::{self, Formed};
+use crate::matrix::norms::norm2;
+use crate::matrix::Dense;
+use nalgebra::DMatrix;
+
+/// A reduction between two reflectors.
+///
+/// Storage: lower triangle, column-major, an even number of rows a column. The
+/// eliminated columns hold the reflectors' vectors below their first entry,
+/// which is 1. The rank-two update by the last reflector is *pending*: it is
+/// carried out together with the product for the next one. [`Self::matrix`]
+/// applies it by the same formula, so the state it returns is bit for bit the
+/// one the next step works on.
+#[derive(Clone, Debug)]
+pub struct ReductionRun {
+    order: usize,
+    stride: usize,
+    re: Vec<f64>,
+    im: Vec<f64>,
+    done: usize,
+    pending: Option<(Split, Split)>,
+    spare: [Split; 2],
+    diagonal: Vec<f64>,
+    off_re: Vec<f64>,
+    off_im: Vec<f64>,
+    scalars: Vec<f64>,
+}
+
+/// The parts of a finished reduction.
+pub(crate) struct Finished {
+    pub stride: usize,
+    pub re: Vec<f64>,
+    pub im: Vec<f64>,
+    pub diagonal: Vec<f64>,
+    pub off_re: Vec<f64>,
+    pub off_im: Vec<f64>,
+    pub scalars: Vec<f64>,
+}
+
+impl ReductionRun {
+    /// Starts on the lower triangle of a square Hermitian matrix.
+    pub(crate) fn new(matrix: &Dense) -> Self {
+        let order = matrix.rows();
+        let stride = order + order % 2;
+        let padded = |plane: &DMatrix<f64>| {
+            let mut copy = vec![0.0; stride * stride];
+            for (col, source) in plane.as_slice().chunks_exact(order.max(1)).enumerate() {
+                copy[col * stride + col..col * stride + order].copy_from_slice(&source[col..]);
+            }
+            copy
+        };
+        let complex = matrix.is_complex();
+        Self {
+            order,
+            stride,
+            re: padded(&matrix.re),
+            im: matrix.im.as_ref().map(padded).unwrap_or_default(),
+            done: 0,
+            pending: None,
+            spare: [Split::zeros(stride, complex), Split::zeros(stride, complex)],
+            diagonal: Vec::with_capacity(order),
+            off_re: Vec::with_capacity(order),
+            off_im: Vec::with_capacity(order),
+            scalars: Vec::with_capacity(order),
+        }
+    }
+
+    fn is_complex(&self) -> bool {
+        !self.im.is_empty()
+    }
+
+    /// Number of rows.
+    pub fn order(&self) -> usize {
+        self.order
+    }
+
+    /// Columns already in tridiagonal form.
+    pub fn columns_done(&self) -> usize {
+        self.done
+    }
+
+    /// Brings the next column into tridiagonal form. Cost: 4·m² operations
+    /// for a trailing matrix of order m, four times that when complex.
+    pub(crate) fn step(&mut self) {
+        let (col, order) = (self.done, self.order);
+        self.update_column(col);
+        self.diagonal.push(self.re[col * self.stride + col]);
+        self.done += 1;
+        if self.done == order {
+            return;
+        }
+        let start = col * self.stride + col + 1;
+        let end = col * self.stride + order;
+        let im = if self.is_complex() {
+            &mut self.im[start..end]
+        } else {
+            &mut []
+        };
+        let formed = reflector::form(&mut self.re[start..end], im);
+        self.off_re.push(formed.image_re);
+        self.off_im.push(formed.image_im);
+        self.scalars.push(formed.scalar);
+        if self.done + 1 < order {
+            self.pass(col + 1, formed);
+        }
+    }
+
+    /// Applies the pending update to one column of the trailing matrix.
+    fn update_column(&mut self, col: usize) {
+        let Some((v, w)) = &self.pending else { return };
+        let base = col * self.stride;
+        if self.im.is_empty() {
+            for row in col..self.order {
+                let entry = &mut self.re[base + row];
+                *entry = updated(*entry, v.re[row], w.re[row], v.re[col], w.re[col]);
+            }
+            return;
+        }
+        let at = |s: &Split, i: usize| (s.re[i], s.im[i]);
+        for row in col..self.order {
+            let entry = (self.re[base + row], self.im[base + row]);
+            let new = updated_complex(entry, at(v, row), at(w, row), at(v, col), at(w, col));
+            (self.re[base + row], self.im[base + row]) = new;
+        }
+        self.im[base + col] = 0.0;
+    }
+
+    /// Updates the trailing matrix from `first` on, multiplies it by the
+    /// reflector in the column before, and leaves the next pair pending.
+    fn pass(&mut self, first: usize, formed: Formed) {
+        if formed.scalar == 0.0 && self.pending.is_none() {
+            return;
+        }
+        let [mut x, mut y] = std::mem::take(&mut self.spare);
+        let source = (first - 1) * self.stride + first;
+        let length = self.order - first;
+        let (zero_v, zero_w);
+        let (v, w) = match &self.pending {
+            Some((v, w)) => (v, w),
+            None => {
+                zero_v = Split::zeros(self.stride, self.is_complex());
+                zero_w = zero_v.clone();
+                (&zero_v, &zero_w)
+            }
+        };
+        x.re[first..first + length].copy_from_slice(&self.re[source..source + length]);
+        let tau = formed.scalar;
+        if self.im.is_empty() {
+            pass::real(
+                &mut self.re,
+                self.stride,
+                first,
+                &v.re,
+                &w.re,
+                &x.re,
+                &mut y.re,
+            );
+            let inner = dot(&x.re[first..], &y.re[first..]);
+            let share = 0.5 * tau * tau * inner;
+            for (y, x) in y.re[first..].iter_mut().zip(&x.re[first..]) {
+                *y = tau * *y - share * x;
+            }
+        } else {
+            x.im[first..first + length].copy_from_slice(&self.im[source..source + length]);
+            let planes = Planes {
+                re: &mut self.re,
+                im: &mut self.im,
+            };
+            pass::complex(planes, self.stride, first, v, w, &x, &mut y);
+            // vᴴ S v is real for Hermitian S.
+            let inner = dot(&x.re[first..], &y.re[first..]) + dot(&x.im[first..], &y.im[first..]);
+            let share = 0.5 * tau * tau * inner;
+            for (y, x) in y.re[first..].iter_mut().zip(&x.re[first..]) {
+                *y = tau * *y - share * x;
+            }
+            for (y, x) in y.im[first..].iter_mut().zip(&x.im[first..]) {
+                *y = tau * *y - share * x;
+            }
+        }
+        let old = self.pending.take();
+        if tau != 0.0 {
+            self.pending = Some((x, y));
+            self.spare = match old {
+                Some((v, w)) => [v, w],
+                None => [
+                    Split::zeros(self.stride, !self.im.is_empty()),
+                    Split::zeros(self.stride, !self.im.is_empty()),
+                ],
+            };
+        } else {
+            self.spare = [x, y];
+        }
+    }
+
+    /// The reflector of the column done last: planes of v (from its leading 1
+    /// on), τ, and the image β. `None` before the first and after the last.
+    pub(crate) fn last_reflector(&self) -> Option<LastReflector<'_>> {
+        let col = self.done.checked_sub(1)?;
+        let scalar = *self.scalars.get(col)?;
+        let range = col * self.stride + col + 1..col * self.stride + self.order;
+        Some(LastReflector {
+            column: col,
+            re: &self.re[range.clone()],
+            im: if self.is_complex() {
+                &self.im[range]
+            } else {
+                &[]
+            },
+            scalar,
+            image: (self.off_re[col], self.off_im[col]),
+        })
+    }
+
+    /// Entry (row, col) with row ≥ col ≥ `done` of the trailing matrix, the
+    /// pending update applied.
+    fn trailing(&self, row: usize, col: usize) -> (f64, f64) {
+        let at = col * self.stride + row;
+        if self.im.is_empty() {
+            let entry = self.re[at];
+            let new = match &self.pending {
+                Some((v, w)) => updated(entry, v.re[row], w.re[row], v.re[col], w.re[col]),
+                None => entry,
+            };
+            return (new, 0.0);
+        }
+        let entry = (self.re[at], if row == col { 0.0 } else { self.im[at] });
+        let Some((v, w)) = &self.pending else {
+            return entry;
+        };
+        let pick = |s: &Split, i: usize| (s.re[i], s.im[i]);
+        let (re, im) = updated_complex(
+            entry,
+            pick(v, row),
+            pick(w, row),
+            pick(v, col),
+            pick(w, col),
+        );
+        (re, if row == col { 0.0 } else { im })
+    }
+
+    /// The whole matrix as it stands, Hermitian, both triangles. Cost: O(n²).
+    pub fn matrix(&self) -> Dense {
+        let mut re = DMatrix::zeros(self.order, self.order);
+        let mut im = re.clone();
+        let mut put = |row: usize, col: usize, entry: (f64, f64)| {
+            re[(row, col)] = entry.0;
+            re[(col, row)] = entry.0;
+            im[(row, col)] = entry.1;
+            im[(col, row)] = if row == col { 0.0 } else { -entry.1 };
+        };
+        for (col, entry) in self.diagonal.iter().enumerate() {
+            put(col, col, (*entry, 0.0));
+        }
+        for (col, entry) in self.off_re.iter().zip(&self.off_im).enumerate() {
+            put(col + 1, col, (*entry.0, *entry.1));
+        }
+        for col in self.done..self.order {
+            for row in col..self.order {
+                put(row, col, self.trailing(row, col));
+            }
+        }
+        if self.is_complex() {
+            Dense::complex(re, im)
+        } else {
+            Dense::real(re)
+        }
+    }
+
+    /// Sum of the diagonal as it stands. Cost: O(n).
+    pub(crate) fn trace(&self) -> f64 {
+        let settled: f64 = self.diagonal.iter().sum();
+        (self.done..self.order).fold(settled, |sum, col| sum + self.trailing(col, col).0)
+    }
+
+    /// √(Σ diagonal² + 2 Σ |off-diagonal|²) over the tridiagonal band as it
+    /// stands. Cost: O(n).
+    pub(crate) fn band_norm(&self) -> f64 {
+        let mut parts = Vec::with_capacity(5 * self.order);
+        parts.extend_from_slice(&self.diagonal);
+        for (re, im) in self.off_re.iter().zip(&self.off_im) {
+            parts.extend([*re, *re, *im, *im]);
+        }
+        for col in self.done..self.order {
+            parts.push(self.trailing(col, col).0);
+            if col + 1 < self.order {
+                let (re, im) = self.trailing(col + 1, col);
+                parts.extend([re, re, im, im]);
+            }
+        }
+        norm2(parts.iter())
+    }
+
+    /// Frobenius norm outside the tridiagonal band, summed entry by entry.
+    /// Cost: O(m²) for a trailing matrix of order m.
+    pub(crate) fn norm_outside_band(&self) -> f64 {
+        let column_norms: Vec<f64> = (self.done..self.order)
+            .map(|col| {
+                let parts: Vec<f64> = (col + 2..self.order)
+                    .flat_map(|row| {
+                        let (re, im) = self.trailing(row, col);
+                        [re, im]
+                    })
+                    .collect();
+                norm2(parts.iter())
+            })
+            .collect();
+        norm2(column_norms.iter()) * std::f64::consts::SQRT_2
+    }
+
+    /// Bytes held, for the memory figures.
+    pub(crate) fn approx_bytes(&self) -> usize {
+        8 * (self.re.len() + self.im.len() + 8 * self.order)
+    }
+
+    pub(crate) fn finish(self) -> Finished {
+        Finished {
+            stride: self.stride,
+            re: self.re,
+            im: self.im,
+            diagonal: self.diagonal,
+            off_re: self.off_re,
+            off_im: self.off_im,
+            scalars: self.scalars,
+        }
+    }
+}
+
+/// See [`ReductionRun::last_reflector`].
+pub(crate) struct LastReflector<'a> {
+    pub column: usize,
+    pub re: &'a [f64],
+    pub im: &'a [f64],
+    pub scalar: f64,
+    pub image: (f64, f64),
+}
+
+/// Inner product in four interleaved sums, so that it vectorises in a fixed order.
+pub(crate) fn dot(x: &[f64], y: &[f64]) -> f64 {
+    let (x_fours, x_rest) = x.as_chunks::<4>();
+    let (y_fours, y_rest) = y.as_chunks::<4>();
+    let mut sums = [0.0; 4];
+    for (x, y) in x_fours.iter().zip(y_fours) {
+        for lane in 0..4 {
+            sums[lane] += x[lane] * y[lane];
+        }
+    }
+    let rest: f64 = x_rest
+        .iter()
+        .zip(y_rest)
+        .fold(0.0, |sum, (x, y)| sum + x * y);
+    ((sums[0] + sums[2]) + (sums[1] + sums[3])) + rest
+}
