@@ -4,14 +4,21 @@
 //! understand, with what it could not. Rows and columns are counted from 1 in
 //! what is said to people, and from 0 in the data.
 
+pub mod cell;
+mod cell_error;
 mod cells;
 mod clean;
+pub mod complex;
 mod decimal;
 mod delimited;
 pub mod diagnostic;
+mod expression;
+mod expression_lexer;
 mod json;
 mod labels;
 mod misfit;
+mod number;
+pub mod parameters;
 mod plain;
 pub mod question;
 mod raw;

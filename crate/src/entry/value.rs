@@ -23,17 +23,9 @@ impl Value {
 
     /// The complex conjugate.
     pub fn conjugate(&self) -> Self {
-        let im = match &self.im {
-            ExactReal::Decimal { digits, exponent } => ExactReal::Decimal {
-                digits: -digits,
-                exponent: *exponent,
-            },
-            ExactReal::Binary(x) => ExactReal::Binary(-x),
-            ExactReal::Rational(r) => ExactReal::Rational(Box::new(-(**r).clone())),
-        };
         Self {
             re: self.re.clone(),
-            im,
+            im: self.im.neg(),
         }
     }
 }
