@@ -298,7 +298,7 @@ fn arctan_of_inverse(m: u64, fixed: usize) -> (IBig, u64) {
     let mut k = 0u64;
     while !power.is_zero() {
         let term = IBig::from(&power / UBig::from(2 * k + 1));
-        if k % 2 == 0 {
+        if k.is_multiple_of(2) {
             sum += term
         } else {
             sum -= term
