@@ -3,6 +3,8 @@
 use serde::{Deserialize, Serialize};
 use tsify::Tsify;
 
+use super::reading::Which;
+
 /// Everything a person typed and chose; the page keeps nothing else of the
 /// problem.
 #[derive(Clone, Debug, Default, PartialEq, Eq, Serialize, Deserialize, Tsify)]
@@ -68,4 +70,22 @@ pub enum Adjustment {
     Upper,
     /// The mean of each cell and its mirror's conjugate counts.
     Mean,
+}
+
+impl ProblemDocument {
+    /// The text of one of the matrices; empty when there is none.
+    pub(super) fn text(&self, which: Which) -> &str {
+        match which {
+            Which::Matrix => &self.matrix,
+            Which::Metric => self.metric.as_deref().unwrap_or_default(),
+        }
+    }
+
+    /// The key of the answer taken for it, if one was.
+    pub(super) fn layout(&self, which: Which) -> Option<&str> {
+        match which {
+            Which::Matrix => self.choices.matrix_layout.as_deref(),
+            Which::Metric => self.choices.metric_layout.as_deref(),
+        }
+    }
 }

@@ -37,11 +37,11 @@ pub struct TextReading {
     pub complex: bool,
     /// What is wrong or worth knowing, in order of position.
     pub diagnostics: Vec<Diagnostic>,
-    /// Diagnostics beyond those listed.
-    pub diagnostics_left_out: u32,
     /// Set where the text can be read in more than one way.
     #[tsify(optional)]
     pub question: Option<Question>,
+    /// Whether a choice made earlier decides how the text is read.
+    pub answered: bool,
     /// Set where mirrored cells disagree.
     #[tsify(optional)]
     pub disagreements: Option<Disagreements>,
@@ -99,8 +99,10 @@ pub struct Diagnostic {
     pub from: u32,
     /// End of the offending text.
     pub to: u32,
-    /// What is wrong and what was expected, as sentences.
+    /// What is wrong, as a sentence.
     pub message: String,
+    /// What was expected there; empty when the sentence says it all.
+    pub expected: String,
     /// Repairs in one action.
     pub repairs: Vec<Repair>,
 }
@@ -128,8 +130,12 @@ pub struct Question {
 pub struct Answer {
     /// What goes into the document's choices.
     pub key: String,
-    /// The answer in words, with what the first cells would then be.
+    /// The answer in words.
     pub label: String,
+    /// The shape it would give, in words.
+    pub shape: String,
+    /// The first cells it would give.
+    pub corner: Vec<Vec<String>>,
     /// Whether it is the one in force.
     pub chosen: bool,
 }

@@ -3,6 +3,7 @@ import { defaultKeymap, history, historyKeymap, redo, undo } from '@codemirror/c
 import { lintGutter, setDiagnostics, type Diagnostic as Marked } from '@codemirror/lint';
 import { EditorState } from '@codemirror/state';
 import { drawSelection, EditorView, keymap, lineNumbers, placeholder } from '@codemirror/view';
+import { effect, type ReadonlySignal } from '@preact/signals';
 import { useEffect, useRef } from 'preact/hooks';
 
 import type { Diagnostic, Repair } from '../../shared/generated/eigenledger';
@@ -26,7 +27,8 @@ export interface EditorHandle {
 
 interface EditorProps {
   readonly label: string;
-  readonly text: string;
+  /** The text as the document has it; the editor follows at once. */
+  readonly text: ReadonlySignal<string>;
   readonly hint: string;
   /** Undefined while they are being made: the marks on show stay. */
   readonly diagnostics: readonly Diagnostic[] | undefined;
@@ -61,11 +63,11 @@ function marked(
 ): Marked[] {
   return diagnostics
     .filter(({ from }) => from <= length)
-    .map(({ from, to, severity, message, repairs }) => ({
+    .map(({ from, to, severity, message, expected, repairs }) => ({
       from,
       to: Math.min(Math.max(to, from), length),
       severity: severity === 'note' ? 'info' : severity,
-      message,
+      message: expected === '' ? message : `${message} Expected: ${expected}.`,
       actions: repairs.map((repair) => ({ name: repair.label, apply: () => { onRepair(repair); } })),
     }));
 }
@@ -81,7 +83,7 @@ export function Editor(props: EditorProps) {
     const editor = new EditorView({
       parent: place.current,
       state: EditorState.create({
-        doc: latest.current.text,
+        doc: latest.current.text.value,
         extensions: [
           lineNumbers(),
           history(),
@@ -126,18 +128,20 @@ export function Editor(props: EditorProps) {
         editor.focus();
       },
     });
+    // A document opened from elsewhere; one undo brings the former text back.
+    // Within the same turn as the change, or a late echo would undo typing.
+    const unfollow = effect(() => {
+      const text = latest.current.text.value;
+      const { doc } = editor.state;
+      if (doc.length === text.length && doc.toString() === text) return;
+      editor.dispatch({ changes: { from: 0, to: doc.length, insert: text } });
+    });
     return () => {
+      unfollow();
       view.current = null;
       editor.destroy();
     };
   }, []);
-
-  // A document opened from elsewhere; one undo brings the former text back.
-  useEffect(() => {
-    const editor = view.current;
-    if (editor === null || editor.state.doc.toString() === props.text) return;
-    editor.dispatch({ changes: { from: 0, to: editor.state.doc.length, insert: props.text } });
-  }, [props.text]);
 
   useEffect(() => {
     const editor = view.current;

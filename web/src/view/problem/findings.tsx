@@ -22,9 +22,9 @@ function DiagnosticList(props: {
   onShow: (from: number, to: number) => void;
   onRepair: (repair: Repair) => void;
 }) {
-  const { diagnostics, diagnosticsLeftOut } = props.reading;
+  const { diagnostics } = props.reading;
   const shown = diagnostics.slice(0, LISTED);
-  const more = diagnostics.length - shown.length + diagnosticsLeftOut;
+  const more = diagnostics.length - shown.length;
   if (shown.length === 0) return null;
   return (
     <ul class="findings" aria-label="Found in the text">
@@ -34,7 +34,10 @@ function DiagnosticList(props: {
             {placeOf(diagnostic)}
           </button>
           <span class="weight">{SEVERITY_WORDS[diagnostic.severity]}</span>
-          <span class="sentence">{diagnostic.message}</span>
+          <span class="sentence">
+            {diagnostic.message}
+            {diagnostic.expected !== '' && <span class="soft"> Expected: {diagnostic.expected}.</span>}
+          </span>
           <span class="repairs">
             {diagnostic.repairs.map((repair) => (
               <button key={repair.key} type="button" onClick={() => { props.onRepair(repair); }}>
@@ -49,13 +52,17 @@ function DiagnosticList(props: {
   );
 }
 
-function Asked({ question, onAnswer }: { question: Question; onAnswer: (key: string) => void }) {
+function Asked({ question, onAnswer }: { question: Question; onAnswer: (key: string | undefined) => void }) {
   return (
     <fieldset class="question">
       <legend>{question.text}</legend>
-      {question.answers.map(({ key, label, chosen }) => (
-        <button key={key} type="button" aria-pressed={chosen} onClick={() => { onAnswer(key); }}>
-          {label}
+      {question.answers.map(({ key, label, shape, corner, chosen }) => (
+        <button key={key} type="button" class="answer" aria-pressed={chosen} onClick={() => { onAnswer(key); }}>
+          <span>{label}</span>
+          <span class="soft">{shape}</span>
+          <span class="digits corner" aria-hidden="true">
+            {corner.map((row) => row.join('  ')).join('\n')}
+          </span>
         </button>
       ))}
     </fieldset>
@@ -138,13 +145,24 @@ export function Findings(props: {
   reading: TextReading;
   onShow: (from: number, to: number) => void;
   onRepair: (repair: Repair) => void;
-  onAnswer: (key: string) => void;
+  onAnswer: (key: string | undefined) => void;
   onAdjust: (choice: Adjustment) => void;
 }) {
   const { reading } = props;
   return (
     <div aria-live="polite" class="reading">
-      <p class="soft">Read as: {summaryOf(reading)}</p>
+      <p class="soft">
+        Read as: {summaryOf(reading)}
+        {reading.answered && (
+          <>
+            {' '}
+            (by choice)
+            <button type="button" class="quiet" onClick={() => { props.onAnswer(undefined); }}>
+              read afresh
+            </button>
+          </>
+        )}
+      </p>
       {reading.question && <Asked question={reading.question} onAnswer={props.onAnswer} />}
       <DiagnosticList reading={reading} onShow={props.onShow} onRepair={props.onRepair} />
       {reading.disagreements && <Disagreeing disagreements={reading.disagreements} onAdjust={props.onAdjust} />}

@@ -1,4 +1,5 @@
 /** The Problem section: what is to be solved, as typed. */
+import { computed } from '@preact/signals';
 import { useCallback } from 'preact/hooks';
 
 import type { Adjustment } from '../../shared/generated/eigenledger';
@@ -10,6 +11,9 @@ import { Tools } from './tools';
 
 const MATRIX_HINT = 'Type or paste a matrix: a row a line, cells apart by spaces, tabs, commas or semicolons';
 const METRIC_HINT = 'Type or paste the metric (mass or overlap); one row stands for a diagonal';
+
+const matrixText = computed(() => sheet.value.value.matrix);
+const metricText = computed(() => sheet.value.value.metric ?? '');
 
 /** The example of a first visit gives way to the first paste, whole. */
 function pasteReplaces(text: string): boolean {
@@ -54,7 +58,7 @@ function Heading() {
 }
 
 export function Problem() {
-  const { matrix, metric, parameters } = sheet.value.value;
+  const { metric, parameters } = sheet.value.value;
   const shown = latestReading.value?.value;
   const current = reading.value !== null;
   const neverReplaces = useCallback(() => false, []);
@@ -66,7 +70,7 @@ export function Problem() {
         which="matrix"
         label="The matrix"
         hint={MATRIX_HINT}
-        text={matrix}
+        text={matrixText}
         reading={shown?.matrix}
         current={current}
         onText={changeMatrix}
@@ -97,7 +101,7 @@ export function Problem() {
             which="metric"
             label="The metric"
             hint={METRIC_HINT}
-            text={metric}
+            text={metricText}
             reading={shown?.metric}
             current={current}
             onText={changeMetric}

@@ -1,5 +1,5 @@
 /** One matrix on the page: its text or grid, its map, and what was found in it. */
-import { signal } from '@preact/signals';
+import { signal, type ReadonlySignal } from '@preact/signals';
 import { useMemo, useRef } from 'preact/hooks';
 
 import type { Adjustment, Repair, TextReading, Which } from '../../shared/generated/eigenledger';
@@ -14,14 +14,14 @@ interface TextPartProps {
   readonly which: Which;
   readonly label: string;
   readonly hint: string;
-  readonly text: string;
+  readonly text: ReadonlySignal<string>;
   /** The latest reading of this text, current or not. */
   readonly reading: TextReading | undefined;
   /** Whether it is of the text as it stands. */
   readonly current: boolean;
   readonly onText: (text: string) => void;
   readonly onPaste: (text: string) => boolean;
-  readonly onAnswer: (key: string) => void;
+  readonly onAnswer: (key: string | undefined) => void;
   readonly onAdjust: (choice: Adjustment) => void;
 }
 
