@@ -16,6 +16,19 @@ const STEPS = 40;
 /** The faintest entry still differs from the paper. */
 const FAINTEST = 0.12;
 
+interface Scale {
+  readonly low: number;
+  readonly high: number;
+}
+
+/** The scale never spans less than a decade, so that equal entries do not look graded. */
+function scaleOf(map: MagnitudePicture): Scale {
+  const decades = map.decades.filter((decade) => Number.isFinite(decade));
+  const high = decades.reduce((most, decade) => Math.max(most, decade), -Infinity);
+  const low = decades.reduce((least, decade) => Math.min(least, decade), Infinity);
+  return { low: Math.min(low, high - 1), high };
+}
+
 function colourOf(style: CSSStyleDeclaration, negative: boolean, depth: number): string {
   const name = negative ? '--shade-negative' : '--shade';
   const low = style.getPropertyValue(`${name}-low`);
@@ -30,6 +43,7 @@ function draw(canvas: HTMLCanvasElement, map: MagnitudePicture): void {
   canvas.width = pixels;
   canvas.height = pixels;
   const style = getComputedStyle(canvas);
+  const { low, high } = scaleOf(map);
   const cell = pixels / map.side;
   const stroked = cell >= SMALLEST_STROKED_PX * devicePixelRatio;
   const gap = cell > 12 ? 1 : 0;
@@ -37,10 +51,10 @@ function draw(canvas: HTMLCanvasElement, map: MagnitudePicture): void {
   for (let row = 0; row < map.side; row += 1) {
     for (let col = 0; col < map.side; col += 1) {
       const at = row * map.side + col;
-      const ink = map.ink[at] ?? -1;
-      if (ink < 0) continue;
+      const decade = map.decades[at];
+      if (decade === undefined || !Number.isFinite(decade)) continue;
       const negative = (map.signs[at] ?? 0) < 0;
-      const step = Math.round(ink * STEPS);
+      const step = Math.round(((decade - low) / (high - low)) * STEPS);
       const key = negative ? -1 - step : step;
       let colour = palette.get(key);
       if (colour === undefined) {
