@@ -13,7 +13,8 @@ use dashu_base::BitTest;
 use nalgebra::DMatrix;
 
 use crate::matrix::{Dense, ExactMatrix};
-use crate::num::ExactReal;
+use crate::num::upper::square_sum_up;
+use crate::num::{Dyadic, ExactReal, Toward, Upper};
 use crate::pairs::Approximation;
 use crate::problem::Problem;
 
@@ -108,6 +109,48 @@ impl Frame {
         frame.weights = weights;
         frame.metric_scale = metric_scale;
         Ok(frame)
+    }
+
+    /// A standard problem of doubles, meant exactly, values ascending.
+    pub fn of_doubles(matrix: Dense, vectors: Dense, values: Vec<f64>) -> Self {
+        let order = matrix.rows();
+        Self {
+            order,
+            matrix,
+            metric: None,
+            vectors,
+            values,
+            weights: vec![0; order],
+            matrix_scale: 0,
+            metric_scale: 0,
+        }
+    }
+
+    /// What rounding `typed` to the frame's doubles left: its low parts, and a
+    /// bound on the Frobenius norm of what those miss.
+    pub fn low_parts<'a>(&self, typed: &'a ExactMatrix, scale: i32) -> (Dense, Upper) {
+        let order = self.order;
+        let mut bounds = Vec::new();
+        let mut plane = |part: &dyn Fn(usize, usize) -> &'a ExactReal| {
+            let mut plane = DMatrix::zeros(order, order);
+            for i in 0..order {
+                for j in 0..order {
+                    let (low, bound) =
+                        low_part(part(i, j), self.weights[i] + self.weights[j] - scale);
+                    plane[(i, j)] = low;
+                    if bound != 0.0 {
+                        bounds.push(bound);
+                    }
+                }
+            }
+            plane
+        };
+        let re = plane(&|i, j| typed.re(i, j));
+        let im = self
+            .matrix
+            .is_complex()
+            .then(|| plane(&|i, j| typed.im(i, j)));
+        (Dense { re, im }, square_sum_up(bounds.into_iter()).sqrt())
     }
 
     /// Typed λ = frame λ · 2^scale.
@@ -286,4 +329,23 @@ fn nearest(x: &ExactReal, power: i32) -> f64 {
         return moved;
     }
     x.nearest(-power)
+}
+
+/// The double next to what rounding x · 2^power to nearest leaves, and a bound
+/// on what that misses.
+fn low_part(x: &ExactReal, power: i32) -> (f64, f64) {
+    let (Some(ratio), Some(high)) = (x.rational(), Dyadic::from_f64(nearest(x, power))) else {
+        return (0.0, f64::INFINITY);
+    };
+    let rest = ratio - high.scaled(-i64::from(power)).to_rational();
+    let grid = high.magnitude().unwrap_or(-1000) - 120;
+    let low = Dyadic::from_rational(&rest, grid - i64::from(power), Toward::Down)
+        .scaled(i64::from(power));
+    let low = low.to_f64(Toward::Down);
+    let bound = if rest.is_zero() {
+        0.0
+    } else {
+        (low.abs() * f64::EPSILON).next_up() + times_power(1.0, grid.max(-1074))
+    };
+    (low, bound)
 }

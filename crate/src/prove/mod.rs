@@ -10,13 +10,17 @@
 //! What is *not* proved: the processor's and compiler's conformance to IEEE 754
 //! binary64 with round to nearest; the model behind the matrix.
 
+mod block;
 mod diagonal;
 mod enclosure;
 mod frame;
+mod jacobi;
 mod norms;
 mod proof;
 mod residual;
+mod slices;
 mod spectrum;
+mod tight;
 
 #[cfg(test)]
 mod tests;
@@ -98,14 +102,14 @@ fn quick(
     control: &mut dyn Control,
 ) -> Proof {
     let order = frame.order;
-    let mut residual = residual::measure(&mut frame);
+    let (mut gram, mut residual) = residual::measure(&mut frame);
     if residual.spectrum(&frame).is_none() {
         conditions.push(nonsingular(
             &residual,
             "the proof starts from the matrix alone",
         ));
         if let Ok(mut bare) = Frame::without_vectors(problem) {
-            residual = residual::measure(&mut bare);
+            (gram, residual) = residual::measure(&mut bare);
             frame = bare;
         }
     }
@@ -117,11 +121,16 @@ fn quick(
     diagonal::tighten(problem, &mut spectrum, frame.scale(), TYPED_BITS);
     conditions.push(nonsingular(&residual, ""));
     conditions.extend(radii(&residual, &frame));
-    let mut proof = Proof::new(Level::Quick, spectrum.finish(frame.scale()), conditions);
-    proof.push(separation(&proof));
-    if control.progress(Stage::Prove, 1.0) == Flow::Cancel || level == Level::Quick {
-        return proof;
+    let mut reached = Level::Quick;
+    if level != Level::Quick && control.progress(Stage::Prove, 0.3) == Flow::Continue {
+        if let Some(mut tight) = tight::tight(problem, &frame, &gram) {
+            diagonal::tighten(problem, &mut tight, frame.scale(), TYPED_BITS);
+            spectrum = tight;
+            reached = Level::Tight;
+        }
     }
+    let mut proof = Proof::new(reached, spectrum.finish(frame.scale()), conditions);
+    proof.push(separation(&proof));
     proof
 }
 

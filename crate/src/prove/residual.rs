@@ -46,7 +46,7 @@ pub(super) struct Residual {
 /// Measures X and Λ of a frame. Columns far from unit norm are rescaled once.
 ///
 /// Cost: n³ + n³/2 multiplications and additions for M = I, n³ more for a pair.
-pub(super) fn measure(frame: &mut Frame) -> Residual {
+pub(super) fn measure(frame: &mut Frame) -> (Gram, Residual) {
     let first = Gram::of(frame);
     let gram = match first.unit_factors() {
         None => first,
@@ -55,17 +55,23 @@ pub(super) fn measure(frame: &mut Frame) -> Residual {
             Gram::of(frame)
         }
     };
-    gram.residual(frame)
+    let residual = gram.residual(frame);
+    (gram, residual)
 }
 
 /// The products with the metric.
-struct Gram {
+#[derive(Clone, Debug)]
+pub(super) struct Gram {
     /// fl(MX) for a pair.
     weighted: Option<Dense>,
-    /// Approximate diagonal of XᴴMX − I.
-    diagonal: Vec<f64>,
-    defect: Upper,
-    vectors: Norms,
+    /// Approximate F = XᴴMX − I, exactly Hermitian, n × n.
+    pub defects: Dense,
+    /// ≥ the spectral norm of its error.
+    pub defects_error: Upper,
+    /// φ ≥ ‖F‖₂.
+    pub defect: Upper,
+    /// Norms of X.
+    pub vectors: Norms,
     /// ≥ ‖fl(MX)ₖ − MXₖ‖₂ for typed M; empty for M = I.
     weighted_loss: Vec<Upper>,
 }
@@ -86,13 +92,11 @@ impl Gram {
             }
         };
         let mut gram = upper_gram(&frame.vectors, weighted.as_ref().unwrap_or(&frame.vectors));
-        let mut diagonal = Vec::with_capacity(order);
         let mut subtraction = 0.0f64;
         for k in 0..order {
             let entry = gram.re[(k, k)] - 1.0;
             subtraction = subtraction.max(entry.abs());
             gram.re[(k, k)] = entry;
-            diagonal.push(entry);
         }
         // ‖fl − exact‖: the product's own rounding and the subtraction's.
         let right = weighted_norms.as_ref().unwrap_or(&vectors).spectral;
@@ -104,14 +108,14 @@ impl Gram {
             let lost = vectors.spectral.times(root_sum_square(&weighted_loss));
             own = own.plus(lost.times(Upper::of(std::f64::consts::SQRT_2.next_up())));
         }
-        let defect = Norms::of(&gram)
-            .spectral
-            .plus(own)
+        let defects_error = own
             .plus(rounding.underflow.times(Upper::of(order as f64)))
             .plus(Upper::of(subtraction).times(Upper::of(UNIT)));
+        let defect = Norms::of(&gram).spectral.plus(defects_error);
         Self {
             weighted,
-            diagonal,
+            defects: gram,
+            defects_error,
             defect,
             vectors,
             weighted_loss,
@@ -120,20 +124,20 @@ impl Gram {
 
     /// Factors that bring columns of norm far from one to norm one.
     fn unit_factors(&self) -> Option<Vec<f64>> {
-        let far = self.diagonal.iter().any(|entry| entry.abs() > 0.125);
-        let usable = self
-            .diagonal
+        let diagonal = self.defects.re.diagonal();
+        let far = diagonal.iter().any(|entry| entry.abs() > 0.125);
+        let usable = diagonal
             .iter()
             .all(|entry| entry.is_finite() && *entry > -1.0);
         (far && usable).then(|| {
-            self.diagonal
+            diagonal
                 .iter()
                 .map(|entry| 1.0 / (1.0 + entry).sqrt())
                 .collect()
         })
     }
 
-    fn residual(self, frame: &Frame) -> Residual {
+    fn residual(&self, frame: &Frame) -> Residual {
         let order = frame.order;
         let rounding = Rounding::new(order, order, frame.vectors.is_complex());
         let size = Norms::of(&frame.matrix).spectral;

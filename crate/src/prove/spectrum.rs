@@ -91,6 +91,21 @@ impl Spectrum {
         &self.lower[k]
     }
 
+    /// Proven upper bound of λₖ.
+    pub fn upper(&self, k: usize) -> &Dyadic {
+        &self.upper[k]
+    }
+
+    /// Proven lower bound of λₖ₊₁, if there is one.
+    pub fn above(&self, k: usize) -> Option<&Dyadic> {
+        self.lower.get(k + 1)
+    }
+
+    /// Proven upper bound of λₖ₋₁, if there is one.
+    pub fn below(&self, k: usize) -> Option<&Dyadic> {
+        k.checked_sub(1).map(|k| &self.upper[k])
+    }
+
     /// Order of the problem.
     pub fn len(&self) -> usize {
         self.values.len()
