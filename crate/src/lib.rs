@@ -18,6 +18,7 @@ pub mod claim;
 pub mod control;
 pub mod entry;
 pub mod exact;
+pub mod fingerprint;
 pub mod iterate;
 pub mod ledger;
 pub mod matrix;
