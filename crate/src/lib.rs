@@ -14,6 +14,13 @@
 //! What is *not* proved: the model behind the matrix, and the conformance of
 //! the processor and compiler to IEEE 754 binary64 with round to nearest.
 
+// As wasm, the tests run under a harness of our own (`wasm_harness` says why).
+#![cfg_attr(
+    all(test, target_arch = "wasm32"),
+    feature(custom_test_frameworks, test),
+    test_runner(crate::wasm_harness::keep)
+)]
+
 pub mod claim;
 pub mod control;
 pub mod entry;
@@ -32,3 +39,6 @@ pub mod solve;
 
 #[cfg(target_arch = "wasm32")]
 pub mod browser;
+
+#[cfg(all(test, target_arch = "wasm32"))]
+mod wasm_harness;

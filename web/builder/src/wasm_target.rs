@@ -58,7 +58,7 @@ impl WasmTarget {
         }
     }
 
-    /// A Cargo command that compiles for the target into its own folder.
+    /// A Cargo command that compiles for the target.
     pub fn cargo(&self, layout: &Layout, verb: &str) -> Command {
         let mut command = match self {
             Self::Installed => {
@@ -78,11 +78,17 @@ impl WasmTarget {
         if matches!(self, Self::Debian { .. }) {
             command.arg("-Zbuild-std=std,panic_abort");
         }
+        command.current_dir(&layout.root).args(["--target", TARGET, "--target-dir"]).arg(self.target_dir(layout));
         command
-            .current_dir(&layout.root)
-            .args(["--target", TARGET, "--target-dir"])
-            .arg(layout.target.join("wasm"));
-        command
+    }
+
+    /// Cargo's folder for this compiler: Debian's must not take turns with the
+    /// user's own in one folder, since each would compile everything again.
+    pub fn target_dir(&self, layout: &Layout) -> PathBuf {
+        match self {
+            Self::Installed => layout.target.clone(),
+            Self::Debian { .. } => layout.target.join("debian"),
+        }
     }
 }
 
