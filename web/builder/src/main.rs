@@ -1,12 +1,14 @@
 //! `cargo page`: builds the module and the page, serves them on this machine,
 //! and runs every check of the project.
 
+mod checks;
 mod console;
 mod debian;
 mod layout;
 mod module;
 mod page;
 mod serve;
+mod single;
 mod wasm_target;
 
 use std::process::ExitCode;
@@ -15,7 +17,8 @@ use anyhow::{bail, Result};
 
 const USAGE: &str = "\
 cargo page serve [--port N]   build, then serve dist/ on this machine
-cargo page build              build dist/ and the single file dist/eigenledger.html";
+cargo page build              build dist/ and the single file dist/eigenledger.html
+cargo page test [STEP]       run every check, or those steps whose name contains STEP";
 
 fn main() -> ExitCode {
     let words: Vec<String> = std::env::args().skip(1).collect();
@@ -42,6 +45,8 @@ fn run(words: &[String]) -> Result<ExitCode> {
             };
             serve::build_and_serve(&layout, port)?;
         }
+        ["test"] => return checks::run(&layout, ""),
+        ["test", filter] => return checks::run(&layout, filter),
         _ => {
             eprintln!("{USAGE}");
             return Ok(ExitCode::from(2));

@@ -1,6 +1,7 @@
 //! The page: its packages, its bundle, and the single file.
 
 use std::fs;
+use std::path::Path;
 
 use anyhow::{bail, Context, Result};
 
@@ -8,17 +9,20 @@ use crate::console::{self, say};
 use crate::layout::Layout;
 use crate::module;
 use crate::serve;
+use crate::single;
 
 /// Builds everything that is served, and the single file.
 pub fn build(layout: &Layout) -> Result<()> {
     module::build(layout)?;
-    install_packages(layout)?;
+    require_node()?;
+    install_packages_in(&layout.web, "the page")?;
     say("Bundling the page.");
     console::run(&mut console::command_in(
         &layout.web,
         "npm",
         &["run", "--silent", "build"],
     ))?;
+    single::assemble(layout)?;
     let served = serve::compress_folder(&layout.dist)?;
     say(&format!(
         "dist/ holds {:.0} kB, compressed.",
@@ -27,18 +31,19 @@ pub fn build(layout: &Layout) -> Result<()> {
     Ok(())
 }
 
-/// Brings `node_modules` in step with the lock file, when it is not.
-pub fn install_packages(layout: &Layout) -> Result<()> {
-    require_node()?;
-    let lock = fs::read(layout.web.join("package-lock.json"))
-        .context("web/package-lock.json is missing")?;
-    let stamp = layout.web.join("node_modules/.installed-from-lock");
+/// Brings `node_modules` of a folder in step with its lock file, when it is
+/// not.
+pub fn install_packages_in(folder: &Path, purpose: &str) -> Result<()> {
+    let lock_path = folder.join("package-lock.json");
+    let lock =
+        fs::read(&lock_path).with_context(|| format!("{} is missing", lock_path.display()))?;
+    let stamp = folder.join("node_modules/.installed-from-lock");
     if fs::read(&stamp).is_ok_and(|installed| installed == lock) {
         return Ok(());
     }
-    say("Installing the page's packages: npm ci");
+    say(&format!("Installing the packages of {purpose}: npm ci"));
     console::run(&mut console::command_in(
-        &layout.web,
+        folder,
         "npm",
         &["ci", "--no-progress", "--loglevel=error"],
     ))?;

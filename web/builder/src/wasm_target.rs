@@ -78,7 +78,10 @@ impl WasmTarget {
         if matches!(self, Self::Debian { .. }) {
             command.arg("-Zbuild-std=std,panic_abort");
         }
-        command.current_dir(&layout.root).args(["--target", TARGET, "--target-dir"]).arg(self.target_dir(layout));
+        command
+            .current_dir(&layout.root)
+            .args(["--target", TARGET, "--target-dir"])
+            .arg(self.target_dir(layout));
         command
     }
 

@@ -22,7 +22,11 @@ function bytesFromBase64(text: string): Uint8Array<ArrayBuffer> {
 
 async function compile(): Promise<WebAssembly.Module> {
   const base64 = embedded(EMBEDDED_MODULE);
-  if (base64 !== null) return WebAssembly.compile(bytesFromBase64(base64));
+  if (base64 !== null) {
+    const packed = new Blob([bytesFromBase64(base64)]).stream();
+    const module = new Response(packed.pipeThrough(new DecompressionStream('gzip')));
+    return WebAssembly.compile(await module.arrayBuffer());
+  }
   const response = await fetch(moduleUrl);
   if (!response.ok) throw new Error(`The module could not be loaded (${String(response.status)}).`);
   if (response.headers.get('content-type')?.startsWith('application/wasm')) {
