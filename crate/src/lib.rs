@@ -35,6 +35,7 @@ pub mod problem;
 pub mod prove;
 pub mod reduce;
 pub mod report;
+pub mod sensitivity;
 pub mod solve;
 
 #[cfg(target_arch = "wasm32")]

@@ -128,7 +128,7 @@ pub fn parse_cell(
     parameters: &Parameters,
     options: CellOptions,
 ) -> Result<CellValue, CellError> {
-    if let Some(re) = parse_plain(text.as_bytes(), options.decimal_mark) {
+    if let Some(re) = parse_plain(text.as_bytes(), options.decimal_mark, parameters) {
         return Ok(CellValue::real(re));
     }
     if text.len() > MAX_CELL_BYTES {
@@ -143,7 +143,7 @@ pub fn parse_cell(
 
 /// The fast road: an optional sign, digits with at most one mark, an optional
 /// short exponent; nothing else, and no value near the ends of the range.
-fn parse_plain(bytes: &[u8], mark: DecimalMark) -> Option<ExactReal> {
+fn parse_plain(bytes: &[u8], mark: DecimalMark, parameters: &Parameters) -> Option<ExactReal> {
     let mark = match mark {
         DecimalMark::Point | DecimalMark::PointWithGroups => b'.',
         DecimalMark::Comma => b',',
@@ -180,6 +180,10 @@ fn parse_plain(bytes: &[u8], mark: DecimalMark) -> Option<ExactReal> {
     }
     let mut exponent = -places;
     if !rest.is_empty() {
+        // In 2e3 the letter may begin a parameter's name: the slow road asks.
+        if !parameters.is_empty() {
+            return None;
+        }
         exponent += plain_exponent(rest)?;
     }
     let digits = if negative { -digits } else { digits };

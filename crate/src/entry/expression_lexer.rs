@@ -5,8 +5,14 @@ use super::number::read_number;
 use crate::num::ExactReal;
 use std::ops::Range;
 
-/// Names with a meaning of their own, in lower case.
-pub(crate) const RESERVED: [&str; 9] = ["i", "j", "pi", "π", "sqrt", "nan", "inf", "infinity", "∞"];
+/// Words for what is not a number, in lower case.
+const NOT_FINITE: [&str; 3] = ["nan", "inf", "infinity"];
+
+/// Whether a name has a meaning of its own in cells.
+pub(crate) fn is_reserved(name: &str) -> bool {
+    matches!(name, "i" | "j" | "π" | "∞")
+        || ["pi", "sqrt"].iter().chain(&NOT_FINITE).any(|word| name.eq_ignore_ascii_case(word))
+}
 
 /// One word.
 #[derive(Clone, Debug)]
@@ -150,17 +156,15 @@ impl<'a> Lexer<'a> {
 }
 
 fn name_token(word: &str, span: Range<usize>) -> Result<Token<'_>, CellError> {
-    Ok(match word {
-        "i" | "j" => Token::Imaginary,
-        "pi" | "Pi" | "PI" => Token::Pi,
-        "sqrt" | "Sqrt" | "SQRT" => Token::RootWord,
-        _ if word.len() <= 8
-            && ["nan", "inf", "infinity"].contains(&word.to_ascii_lowercase().as_str()) =>
-        {
-            return Err(not_finite(span));
-        }
-        _ => Token::Name(word),
-    })
+    if !is_reserved(word) {
+        return Ok(Token::Name(word));
+    }
+    match word.as_bytes()[0].to_ascii_lowercase() {
+        b'p' => Ok(Token::Pi),
+        b's' => Ok(Token::RootWord),
+        _ if word.len() == 1 => Ok(Token::Imaginary),
+        _ => Err(not_finite(span)),
+    }
 }
 
 fn not_finite(span: Range<usize>) -> CellError {

@@ -264,4 +264,8 @@ fn fill(
 }
 
 #[cfg(test)]
+mod cell_tests;
+#[cfg(test)]
+mod parameters_tests;
+#[cfg(test)]
 mod tests;

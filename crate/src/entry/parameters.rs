@@ -5,7 +5,7 @@
 
 use super::cell::{parse_cell, CellError, CellErrorKind, CellOptions};
 use super::complex::ExactComplex;
-use super::expression_lexer::{is_name, names_in, RESERVED};
+use super::expression_lexer::{is_name, is_reserved, names_in};
 use std::cell::Cell;
 use std::collections::BTreeMap;
 
@@ -133,7 +133,7 @@ impl Parameters {
                 break;
             }
             let trimmed = name.trim();
-            if RESERVED.contains(&trimmed.to_lowercase().as_str()) {
+            if is_reserved(trimmed) {
                 errors.push(fault(index, ParameterErrorKind::ReservedName));
             } else if !is_name(trimmed) {
                 errors.push(fault(index, ParameterErrorKind::BadName));
@@ -289,6 +289,11 @@ impl Parameters {
                 }
             }
         }
+    }
+
+    /// Whether there are none.
+    pub fn is_empty(&self) -> bool {
+        self.list.is_empty()
     }
 
     /// Whether a parameter has this name.

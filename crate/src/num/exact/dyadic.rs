@@ -157,6 +157,15 @@ impl DyadicInterval {
         (width << bits) <= least
     }
 
+    /// −x.
+    pub fn negated(&self) -> Self {
+        Self {
+            lower: -self.upper.clone(),
+            upper: -self.lower.clone(),
+            exponent: self.exponent,
+        }
+    }
+
     /// Sum.
     pub fn add(&self, other: &Self, bits: usize) -> Self {
         let exponent = self.exponent.min(other.exponent);

@@ -184,6 +184,8 @@ impl Irrational {
         let (a, b) = (Self::lift(a), Self::lift(b));
         match (&a.form, &b.form) {
             (Form::Terms(x), Form::Terms(y)) => Self::settle(Form::Terms(x.mul(y)?)),
+            (Form::Terms(x), _) if x.is_one() => Ok(ExactReal::Irrational(b)),
+            (_, Form::Terms(y)) if y.is_one() => Ok(ExactReal::Irrational(a)),
             (Form::Root(x), Form::Root(y)) if x == y => Ok(ExactReal::Irrational(Arc::clone(x))),
             (Form::Reciprocal(x), _) if *x == b => Ok(ExactReal::ONE),
             (_, Form::Reciprocal(y)) if a == *y => Ok(ExactReal::ONE),

@@ -173,6 +173,10 @@ impl Terms {
         }
     }
 
+    pub(super) fn is_one(&self) -> bool {
+        self.ratio().is_some_and(|r| r.is_one())
+    }
+
     fn push(&mut self, term: Term) -> Result<(), ArithmeticError> {
         for i in 0..self.0.len() {
             let mine = &self.0[i];
