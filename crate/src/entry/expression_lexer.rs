@@ -11,7 +11,10 @@ const NOT_FINITE: [&str; 3] = ["nan", "inf", "infinity"];
 /// Whether a name has a meaning of its own in cells.
 pub(crate) fn is_reserved(name: &str) -> bool {
     matches!(name, "i" | "j" | "π" | "∞")
-        || ["pi", "sqrt"].iter().chain(&NOT_FINITE).any(|word| name.eq_ignore_ascii_case(word))
+        || ["pi", "sqrt"]
+            .iter()
+            .chain(&NOT_FINITE)
+            .any(|word| name.eq_ignore_ascii_case(word))
 }
 
 /// One word.
