@@ -11,6 +11,11 @@ pub(crate) fn is_invisible(c: char) -> bool {
         | '\u{2060}'..='\u{2064}' | '\u{2066}'..='\u{206F}' | '\u{FE00}'..='\u{FE0F}' | '\u{FEFF}')
 }
 
+/// Whether the character is of a script written from right to left.
+pub(crate) fn is_right_to_left(c: char) -> bool {
+    matches!(c, '\u{0590}'..='\u{08FF}' | '\u{FB1D}'..='\u{FDFF}' | '\u{FE70}'..='\u{FEFC}' | '\u{10800}'..='\u{10FFF}' | '\u{1E800}'..='\u{1EFFF}')
+}
+
 /// Whether the character ends a line.
 pub(crate) fn is_line_break(c: char) -> bool {
     matches!(

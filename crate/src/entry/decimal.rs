@@ -42,7 +42,7 @@ impl Commas {
             self.points += usize::from(text.contains('.'));
             return;
         }
-        if value::thousands(text.trim()).is_some() {
+        if value::without_groups(text).is_some() {
             self.refused += 1;
             return;
         }

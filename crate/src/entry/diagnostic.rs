@@ -39,6 +39,8 @@ pub enum Kind {
     BlankCell,
     /// A cell is not a number or an expression.
     UnreadableCell,
+    /// A cell uses a name that has no value.
+    UnknownName,
     /// A number is NaN or infinite, or too large or small to hold.
     OutOfRange,
     /// Thousands separators, which are refused rather than misread.
@@ -226,7 +228,9 @@ impl Findings {
 /// Characters of the text at fault that a diagnostic repeats.
 const EXCERPT: usize = 40;
 
-/// The text cut to [`EXCERPT`] characters, control characters made visible.
+/// The text cut to [`EXCERPT`] characters, characters that cannot be seen made
+/// visible, and text from right to left isolated, so that it does not turn the
+/// sentence around it (Unicode Standard Annex 9, isolates).
 pub(crate) fn excerpt(text: &str) -> String {
     let mut out: String = text
         .chars()
@@ -242,13 +246,20 @@ pub(crate) fn excerpt(text: &str) -> String {
     if text.chars().nth(EXCERPT).is_some() {
         out.push('…');
     }
+    if out.chars().any(super::clean::is_right_to_left) {
+        return format!("\u{2068}{out}\u{2069}");
+    }
     out
 }
 
-/// `1 cell`, `3 cells`.
+/// `1 cell`, `3 cells`, `2 entries`.
 pub(crate) fn count(number: usize, noun: &str) -> String {
-    let plural = if number == 1 { "" } else { "s" };
-    format!("{} {noun}{plural}", grouped(number))
+    let number_text = grouped(number);
+    match noun.strip_suffix('y') {
+        _ if number == 1 => format!("{number_text} {noun}"),
+        Some(stem) => format!("{number_text} {stem}ies"),
+        None => format!("{number_text} {noun}s"),
+    }
 }
 
 /// A whole number with thin groups of three, for sentences.

@@ -13,6 +13,11 @@ pub(crate) fn looks_like(text: &str) -> bool {
     text.starts_with(['[', '{'])
 }
 
+/// Whether the whole text is one JSON value.
+pub(crate) fn is_json(body: &str) -> bool {
+    serde_json::from_str::<&RawValue>(body).is_ok()
+}
+
 /// Reads nested arrays; `None` when the text is not JSON, with the finding that
 /// says where.
 pub(crate) fn read(source: &str, mut table: RawTable, findings: &mut Findings) -> Option<RawTable> {

@@ -1,5 +1,6 @@
 //! Header rows and first columns of words, and blank margins.
 
+use super::cell::Parameters;
 use super::clean;
 use super::raw::{RawCell, RawTable};
 use super::settings::Labels;
@@ -50,7 +51,7 @@ pub(crate) fn without_blank_triangle(table: RawTable, source: &str) -> RawTable 
 /// Whether the text is a word rather than a number or expression: it starts
 /// with a letter, holds no operator, and is not a name that a cell may hold by
 /// itself (`i`, `pi`, NaN, …).
-fn is_word(text: &str, is_name: &dyn Fn(&str) -> bool) -> bool {
+fn is_word(text: &str, parameters: Option<&Parameters>) -> bool {
     let normal = clean::normal(text);
     let word = normal.trim();
     let lower = word.to_lowercase();
@@ -60,22 +61,22 @@ fn is_word(text: &str, is_name: &dyn Fn(&str) -> bool) -> bool {
             lower.as_str(),
             "i" | "j" | "pi" | "nan" | "inf" | "infinity"
         )
-        && !is_name(word)
+        && !parameters.is_some_and(|parameters| parameters.has(word))
 }
 
 /// What the labels of a table may be, most natural first.
 ///
-/// `is_name` tells the names of parameters, which stand for numbers.
+/// The names of parameters stand for numbers, and are no labels.
 pub(crate) fn possible(
     table: &RawTable,
     source: &str,
-    is_name: &dyn Fn(&str) -> bool,
+    parameters: Option<&Parameters>,
 ) -> Vec<Labels> {
     let rows = table.rows();
     if rows < 2 {
         return vec![Labels::None];
     }
-    let word = |cell: &RawCell| is_word(cell.text(source), is_name);
+    let word = |cell: &RawCell| is_word(cell.text(source), parameters);
     let blank = |cell: &RawCell| clean::is_blank(cell.text(source));
     let corner = &table.row(0)[0];
     let short_head = (1..rows).all(|row| table.row(row).len() == table.row(0).len() + 1);
@@ -106,6 +107,18 @@ pub(crate) fn possible(
     if side_words && (word(corner) || (blank(corner) && !head_words)) {
         labels.push(Labels::Rows);
     }
+    if table.marked_head {
+        let marked = if side_words {
+            Labels::Both
+        } else {
+            Labels::Columns
+        };
+        labels.retain(|&other| other != marked && other != Labels::None);
+        labels.splice(0..0, [marked, Labels::Columns]);
+        labels.dedup();
+        labels.push(Labels::None);
+        return labels;
+    }
     let inner_words = (1..rows).any(|row| table.row(row).iter().skip(1).any(word));
     if labels.is_empty() || inner_words {
         labels.insert(0, Labels::None);
@@ -126,6 +139,7 @@ fn inner_blank(table: &RawTable, source: &str) -> bool {
 }
 
 /// The texts of labels, and the table without them.
+#[derive(Clone)]
 pub(crate) struct Stripped {
     pub table: RawTable,
     pub rows: Vec<String>,

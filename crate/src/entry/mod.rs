@@ -4,19 +4,31 @@
 //! understand, with what it could not. Rows and columns are counted from 1 in
 //! what is said to people, and from 0 in the data.
 
+mod binary;
+mod brackets;
 pub mod cell;
 mod cell_error;
 mod cells;
 mod clean;
 pub mod complex;
+mod conjugate;
 mod decimal;
 mod delimited;
 pub mod diagnostic;
+mod entities;
 mod expression;
 mod expression_lexer;
+mod file;
+pub mod grid;
+mod html;
 mod json;
 mod labels;
+mod latex;
+mod latex_cell;
+mod markdown;
+mod matrix_market;
 mod misfit;
+mod npy;
 mod number;
 pub mod parameters;
 mod plain;
@@ -31,12 +43,12 @@ pub mod span;
 mod value;
 mod write;
 
+pub use cell::{CellValue, Parameters};
 pub use diagnostic::{Diagnostic, Kind, Severity};
 pub use question::Question;
 pub use repair::Repair;
 pub use settings::{DecimalMark, Labels, Layout, Limits, Settings, Shape, SignedWords, Wanted};
 pub use span::Span;
-pub use value::Value;
 
 use diagnostic::{Finding, Findings};
 use reading::Reading;
@@ -62,8 +74,8 @@ pub struct ReadOptions<'a> {
     pub wanted: Wanted,
     /// Choices already made.
     pub settings: Settings,
-    /// Tells the names that stand for parameters.
-    pub is_name: &'a dyn Fn(&str) -> bool,
+    /// The names that cells may use, with their values.
+    pub parameters: Option<&'a Parameters>,
     /// Where reading stops.
     pub limits: Limits,
 }
@@ -73,7 +85,7 @@ impl Default for ReadOptions<'_> {
         Self {
             wanted: Wanted::Square,
             settings: Settings::default(),
-            is_name: &|_| false,
+            parameters: None,
             limits: Limits::default(),
         }
     }
@@ -94,7 +106,7 @@ pub enum Origin {
 #[derive(Clone, Debug)]
 pub struct Cell {
     /// Its exact value; `None` when it could not be read.
-    pub value: Option<Value>,
+    pub value: Option<CellValue>,
     /// Where it stands in the text.
     pub span: Span,
     /// How it came to its value.
@@ -120,6 +132,9 @@ pub struct Entry {
     pub diagnostics: Vec<Diagnostic>,
     /// What has to be asked.
     pub question: Option<Question>,
+    /// The text of a file, to go on with as if it had been pasted; its offsets
+    /// are the ones meant.
+    pub text: Option<String>,
 }
 
 impl Entry {
@@ -152,6 +167,7 @@ impl Entry {
             col_labels: Vec::new(),
             diagnostics: Vec::new(),
             question: None,
+            text: None,
         }
     }
 }
@@ -161,38 +177,70 @@ impl Entry {
 /// Cost: linear in the input, a small constant number of passes.
 pub fn read(input: Input, options: &ReadOptions) -> Entry {
     let mut findings = Findings::new(options.limits.diagnostics);
-    let text = match input {
-        Input::Text(text) => std::borrow::Cow::Borrowed(text),
-        Input::File { bytes, .. } => String::from_utf8_lossy(bytes),
-    };
-    let offsets = Offsets::new(&text);
-    let mut entry = read_text(&text, options, &offsets, &mut findings);
+    match input {
+        Input::Text(text) => read_text(text, options, findings),
+        Input::File { bytes, name } => {
+            let decoded = match check_size(bytes.len(), &options.limits) {
+                Ok(()) => file::decode(bytes, name, options.limits.order),
+                Err(finding) => Err(finding),
+            };
+            match decoded {
+                Ok(decoded) => {
+                    if let Some(remark) = decoded.remark {
+                        findings.push(remark);
+                    }
+                    let mut entry = read_text(&decoded.text, options, findings);
+                    entry.text = Some(decoded.text);
+                    entry
+                }
+                Err(finding) => {
+                    findings.push(*finding);
+                    let mut entry = Entry::nothing();
+                    entry.diagnostics = findings.into_diagnostics(&Offsets::new(""));
+                    entry
+                }
+            }
+        }
+    }
+}
+
+fn check_size(bytes: usize, limits: &Limits) -> Result<(), Box<Finding>> {
+    if bytes <= limits.bytes {
+        return Ok(());
+    }
+    let sentence = format!(
+        "There are {} bytes here; at most {} are read.",
+        diagnostic::grouped(bytes),
+        diagnostic::grouped(limits.bytes)
+    );
+    Err(Box::new(Finding::error(Kind::TooLarge, sentence)))
+}
+
+fn read_text(text: &str, options: &ReadOptions, mut findings: Findings) -> Entry {
+    let mut entry = Entry::nothing();
+    if let Err(finding) = check_size(text.len(), &options.limits) {
+        findings.push(*finding);
+        entry.diagnostics = findings.into_diagnostics(&Offsets::new(""));
+        return entry;
+    }
+    let offsets = Offsets::new(text);
+    understand(&mut entry, text, options, &offsets, &mut findings);
     entry.diagnostics = findings.into_diagnostics(&offsets);
     entry
 }
 
-fn read_text(
+fn understand(
+    entry: &mut Entry,
     text: &str,
     options: &ReadOptions,
     offsets: &Offsets,
     findings: &mut Findings,
-) -> Entry {
-    if text.len() > options.limits.bytes {
-        findings.push(Finding::error(
-            Kind::TooLarge,
-            format!(
-                "The text has {} bytes; at most {} are read.",
-                text.len(),
-                options.limits.bytes
-            ),
-        ));
-        return Entry::nothing();
-    }
+) {
     if clean::is_blank(text) {
         findings.push(
             Finding::error(Kind::Empty, "There is nothing here yet.").expected("rows of numbers"),
         );
-        return Entry::nothing();
+        return;
     }
     let invisible = clean::invisible_count(text);
     if invisible > 0 {
@@ -205,9 +253,10 @@ fn read_text(
         ));
     }
     let outcome = reading::choose(text, options, findings);
-    let mut entry = Entry::nothing();
     if let Some(reading) = outcome.reading {
-        fill(&mut entry, text, &reading, offsets, findings);
+        let none = Parameters::none();
+        let parameters = options.parameters.unwrap_or(&none);
+        fill(entry, text, &reading, parameters, offsets, findings);
     }
     if let Some(question) = &outcome.question {
         if question.preferred.is_none() {
@@ -215,7 +264,6 @@ fn read_text(
         }
     }
     entry.question = outcome.question;
-    entry
 }
 
 /// Reads the numbers and lays them out.
@@ -223,6 +271,7 @@ fn fill(
     entry: &mut Entry,
     text: &str,
     reading: &Reading,
+    parameters: &Parameters,
     offsets: &Offsets,
     findings: &mut Findings,
 ) {
@@ -239,6 +288,7 @@ fn fill(
     let reader = cells::CellReader {
         text,
         settings: &reading.settings,
+        parameters,
     };
     for row in 0..table.rows() {
         let values: Vec<Cell> = table
@@ -248,7 +298,7 @@ fn fill(
             .map(|(col, cell)| Cell {
                 value: reader.read(cell, row, col, findings),
                 span: offsets.span(cell.span),
-                origin: Origin::Given,
+                origin: cell.origin(),
             })
             .collect();
         given.push(values);

@@ -1,37 +1,65 @@
 //! What every layout reader produces: rows of cells that are still text.
 
 use super::span::Bytes;
+use super::Origin;
+
+/// The text of a raw cell.
+#[derive(Clone, Debug, Default, PartialEq, Eq)]
+pub(crate) enum RawText {
+    /// The source at the cell's span.
+    #[default]
+    Source,
+    /// The source with quotes undone, entities decoded or markup rewritten.
+    Rewritten(Box<str>),
+    /// Zero, because the layout gives only what is not zero.
+    ImpliedZero,
+}
 
 /// One cell before its number is read.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
 pub(crate) struct RawCell {
     /// Where it stands in the source.
     pub span: Bytes,
-    /// The text to read, where it is not simply the source at `span` (quotes
-    /// undone, entities decoded, markup rewritten).
-    pub text: Option<Box<str>>,
+    /// What is to be read.
+    pub raw: RawText,
 }
 
 impl RawCell {
     pub fn plain(start: usize, end: usize) -> Self {
         Self {
             span: Bytes::new(start, end),
-            text: None,
+            raw: RawText::Source,
         }
     }
 
     pub fn rewritten(start: usize, end: usize, text: String) -> Self {
         Self {
             span: Bytes::new(start, end),
-            text: Some(text.into_boxed_str()),
+            raw: RawText::Rewritten(text.into_boxed_str()),
+        }
+    }
+
+    pub fn implied_zero() -> Self {
+        Self {
+            span: Bytes::default(),
+            raw: RawText::ImpliedZero,
+        }
+    }
+
+    /// How the cell comes to its value.
+    pub fn origin(&self) -> Origin {
+        match self.raw {
+            RawText::ImpliedZero => Origin::Implied,
+            _ => Origin::Given,
         }
     }
 
     /// The text to read.
     pub fn text<'a>(&'a self, source: &'a str) -> &'a str {
-        match &self.text {
-            Some(text) => text,
-            None => self.span.of(source),
+        match &self.raw {
+            RawText::Source => self.span.of(source),
+            RawText::Rewritten(text) => text,
+            RawText::ImpliedZero => "0",
         }
     }
 }
@@ -48,6 +76,8 @@ pub(crate) struct RawTable {
     pub rows_seen: usize,
     /// Cells in the widest row seen, kept or not.
     pub widest_seen: usize,
+    /// Whether the layout marks the first row as a header.
+    pub marked_head: bool,
     in_row: usize,
 }
 
@@ -62,6 +92,7 @@ impl RawTable {
             cell_limit: (order + 2) * (order + 3),
             rows_seen: 0,
             widest_seen: 0,
+            marked_head: false,
             in_row: 0,
         }
     }

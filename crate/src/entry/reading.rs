@@ -8,7 +8,7 @@ use super::question::{Choice, Preview, Question};
 use super::raw::RawTable;
 use super::recognise;
 use super::settings::{DecimalMark, Labels, Layout, Limits, Settings, Shape, SignedWords, Wanted};
-use super::{json, plain, shape, ReadOptions};
+use super::{brackets, html, json, latex, markdown, matrix_market, plain, shape, ReadOptions};
 
 /// A reading of the text: everything about it is settled but the numbers.
 pub(crate) struct Reading {
@@ -39,14 +39,15 @@ fn tokenise(
     findings: &mut Findings,
 ) -> Option<RawTable> {
     let table = RawTable::new(limits.order);
+    let signed = settings.signed_words.unwrap_or_default();
     match settings.layout.unwrap_or(Layout::Spaces) {
         Layout::Json => json::read(source, table, findings),
-        layout => Some(plain::read(
-            source,
-            layout,
-            settings.signed_words.unwrap_or(SignedWords::Apart),
-            table,
-        )),
+        Layout::Brackets => Some(brackets::read(source, signed, table)),
+        Layout::Latex => Some(latex::read(source, table, findings)),
+        Layout::Markdown => Some(markdown::read(source, table)),
+        Layout::Html => Some(html::read(source, table, findings)),
+        Layout::MatrixMarket => matrix_market::read(source, table, limits.order, findings),
+        layout => Some(plain::read(source, layout, signed, table)),
     }
 }
 
@@ -118,39 +119,56 @@ fn collect(
 ) {
     let labels = match settings.labels {
         Some(labels) => vec![labels],
-        None => labels::possible(table, source, &options.is_name),
+        None => labels::possible(table, source, options.parameters),
     };
+    let mut runs = Vec::new();
     for labels in labels {
         let stripped = labelled(table, source, labels, options);
         let shapes = match settings.shape {
             Some(shape) => vec![shape],
             None => shape::possible(&stripped.table.widths(), options.wanted),
         };
+        let decimals = match settings.decimal {
+            Some(decimal) => vec![decimal],
+            None => decimal::possible(&stripped.table, source),
+        };
         let mut found = false;
-        for shape in shapes
-            .into_iter()
-            .filter(|&shape| fits_exactly(shape, &stripped.table.widths()))
-        {
-            let decimals = match settings.decimal {
-                Some(decimal) => vec![decimal],
-                None => decimal::possible(&stripped.table, source),
-            };
-            for decimal in decimals {
-                found = true;
-                let settings = resolved(settings, labels, decimal, shape);
-                if fits.iter().any(|fit| fit.settings == settings) {
-                    continue;
-                }
-                fits.push(Reading {
-                    settings,
-                    stripped: labelled(table, source, labels, options),
+        for shape in shapes {
+            if !fits_exactly(shape, &stripped.table.widths(), options.wanted) {
+                continue;
+            }
+            for &decimal in &decimals {
+                let reading = Reading {
+                    settings: resolved(settings, labels, decimal, shape),
+                    stripped: stripped.clone(),
                     shape,
-                });
+                };
+                if is_run(&reading) && settings.labels.is_none() {
+                    runs.push(reading);
+                } else {
+                    found = true;
+                    add(fits, reading);
+                }
             }
         }
         if found {
             return;
         }
+    }
+    // A single run beside a header is likelier a short text than a matrix, so
+    // it counts only where no other choice of labels gives rows and columns.
+    let first = runs.first().map(|reading| reading.settings.labels);
+    for reading in runs {
+        if Some(reading.settings.labels) == first {
+            add(fits, reading);
+        }
+    }
+}
+
+/// Adds a reading unless it is there already.
+fn add(fits: &mut Vec<Reading>, reading: Reading) {
+    if fits.iter().all(|fit| fit.settings != reading.settings) {
+        fits.push(reading);
     }
 }
 
@@ -175,11 +193,23 @@ fn resolved(settings: &Settings, labels: Labels, decimal: DecimalMark, shape: Sh
 }
 
 /// Whether a shape, perhaps chosen for an earlier text, can hold these rows.
-fn fits_exactly(shape: Shape, widths: &[usize]) -> bool {
-    match shape {
-        Shape::Full => widths.iter().all(|&width| width == widths[0]),
-        _ => shape::possible(widths, Wanted::Square).contains(&shape),
+fn fits_exactly(shape: Shape, widths: &[usize], wanted: Wanted) -> bool {
+    match (shape, widths.first()) {
+        (_, None) => false,
+        (Shape::Full, Some(first)) => widths.iter().all(|width| width == first),
+        _ => {
+            !matches!(wanted, Wanted::List | Wanted::Any)
+                && shape::possible(widths, Wanted::Square).contains(&shape)
+        }
     }
+}
+
+/// Whether the reading makes its matrix from one run of cells.
+fn is_run(fit: &Reading) -> bool {
+    matches!(
+        fit.shape,
+        Shape::Diagonal | Shape::PackedRows | Shape::PackedLower
+    )
 }
 
 fn too_large(table: &RawTable, options: &ReadOptions, findings: &mut Findings) -> bool {
@@ -220,7 +250,7 @@ fn misfit(
     findings: &mut Findings,
 ) -> Option<Reading> {
     let labels = settings.labels.unwrap_or_else(|| {
-        labels::possible(table, source, &options.is_name)
+        labels::possible(table, source, options.parameters)
             .first()
             .copied()
             .unwrap_or_default()
@@ -241,14 +271,8 @@ fn misfit(
 /// One run of cells is a matrix only where nothing better is: beside a reading
 /// with rows and columns it is left out.
 fn settle_runs(fits: &mut Vec<Reading>, wanted: Wanted) {
-    let run = |fit: &Reading| {
-        matches!(
-            fit.shape,
-            Shape::Diagonal | Shape::PackedRows | Shape::PackedLower
-        )
-    };
-    if wanted == Wanted::Square && !fits.iter().all(run) {
-        fits.retain(|fit| !run(fit));
+    if wanted == Wanted::Square && !fits.iter().all(is_run) {
+        fits.retain(|fit| !is_run(fit));
     }
 }
 

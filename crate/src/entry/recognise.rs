@@ -1,8 +1,8 @@
 //! Which layouts a text may be in, by its content.
 
 use super::clean;
-use super::plain;
 use super::settings::{DecimalMark, Layout, Settings, SignedWords};
+use super::{brackets, html, json, latex, markdown, matrix_market, plain};
 
 /// The readings a text allows, most natural first; one unless the content is
 /// ambiguous. Whether several of them matter is decided by what they give.
@@ -34,10 +34,26 @@ pub(crate) fn candidates(source: &str, chosen: &Settings) -> Vec<Settings> {
 fn by_content(source: &str) -> Vec<Settings> {
     let (start, end) = clean::trim(source);
     let body = &source[start..end];
-    if super::json::looks_like(body) {
-        return vec![of(Layout::Json)];
+    if matrix_market::looks_like(body) {
+        vec![of(Layout::MatrixMarket)]
+    } else if html::looks_like(body) {
+        vec![of(Layout::Html)]
+    } else if latex::looks_like(body) {
+        vec![of(Layout::Latex)]
+    } else if json::looks_like(body) {
+        let bracketed = !json::is_json(body) && brackets::inside(source).is_some();
+        vec![of(if bracketed {
+            Layout::Brackets
+        } else {
+            Layout::Json
+        })]
+    } else if brackets::inside(source).is_some() {
+        vec![of(Layout::Brackets)]
+    } else if markdown::looks_like(source) {
+        vec![of(Layout::Markdown)]
+    } else {
+        Marks::count(source).candidates()
     }
-    Marks::count(source).candidates()
 }
 
 fn of(layout: Layout) -> Settings {

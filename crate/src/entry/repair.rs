@@ -35,6 +35,8 @@ pub enum Action {
     },
     /// Writes a point for the decimal comma in every cell.
     PointsForCommas,
+    /// Writes a comma for the decimal point in every cell.
+    CommasForPoints,
     /// Takes the thousands separators out of every cell where they are certain.
     StripThousands,
     /// Writes 0 into every blank cell.
@@ -81,14 +83,10 @@ pub fn apply(text: &str, repair: &Repair) -> String {
         Action::PointsForCommas => each_cell(text, &repair.settings, |cell| {
             cell.contains(',').then(|| cell.replace(',', "."))
         }),
-        Action::StripThousands => {
-            each_cell(text, &repair.settings, |cell| {
-                match value::thousands(cell) {
-                    Some(value::Refusal::Thousands { plain }) => Some(plain),
-                    _ => None,
-                }
-            })
-        }
+        Action::CommasForPoints => each_cell(text, &repair.settings, |cell| {
+            cell.contains('.').then(|| cell.replace('.', ","))
+        }),
+        Action::StripThousands => each_cell(text, &repair.settings, value::without_groups),
         Action::FillBlanks => rewrite(text, &repair.settings, |rows| {
             for cell in rows
                 .iter_mut()

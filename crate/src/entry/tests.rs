@@ -245,10 +245,16 @@ fn each_mistake_has_its_sentence_and_place() {
             "2 rows of 3 cells make no square matrix.",
         ),
         (
-            "1 x?\n2 3",
+            "1 x\n2 3",
+            Kind::UnknownName,
+            (Some(1), Some(2)),
+            "The name x in row 1, column 2 has no value.",
+        ),
+        (
+            "1 2?\n2 3",
             Kind::UnreadableCell,
             (Some(1), Some(2)),
-            "x? in row 1, column 2 is not a number or expression.",
+            "2? in row 1, column 2 is not a number or expression.",
         ),
         (
             "1 NaN\n2 3",
@@ -288,9 +294,9 @@ fn each_mistake_has_its_sentence_and_place() {
         ),
         (
             "שלום 1\n1 2",
-            Kind::UnreadableCell,
+            Kind::UnknownName,
             (Some(1), Some(1)),
-            "שלום in row 1, column 1 is not a number or expression.",
+            "The name \u{2068}שלום\u{2069} in row 1, column 1 has no value.",
         ),
     ] {
         let entry = square(text);

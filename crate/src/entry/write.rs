@@ -55,7 +55,7 @@ pub(crate) fn cell(text: &str, layout: Layout) -> String {
 }
 
 /// The cell without the white space that would part it into several.
-fn without_gaps(text: &str) -> String {
+pub(crate) fn without_gaps(text: &str) -> String {
     let mut words = text
         .split(clean::is_blank_char)
         .filter(|word| !word.is_empty());
