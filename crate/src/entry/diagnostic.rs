@@ -156,6 +156,9 @@ impl Finding {
     }
 }
 
+/// A finding that ends the reading.
+pub(crate) type Refused = Box<Finding>;
+
 /// Collects findings up to a limit and counts the rest.
 pub(crate) struct Findings {
     list: Vec<Finding>,

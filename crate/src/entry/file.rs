@@ -1,6 +1,6 @@
 //! A file's bytes as text: its encoding, or why it is not text.
 
-use super::diagnostic::{excerpt, Finding, Kind};
+use super::diagnostic::{excerpt, Finding, Kind, Refused};
 use super::npy;
 
 /// What the bytes hold.
@@ -35,12 +35,10 @@ const KNOWN: [(&[u8], &str, &str); 8] = [
 ];
 
 /// Decodes a file.
-pub(crate) fn decode(bytes: &[u8], name: &str, order: usize) -> Result<Decoded, Box<Finding>> {
+pub(crate) fn decode(bytes: &[u8], name: &str, order: usize) -> Result<Decoded, Refused> {
     let name = excerpt(name);
     if npy::looks_like(bytes) {
-        return npy::text(bytes, order)
-            .map(|text| Decoded { text, remark: None })
-            .map_err(Box::new);
+        return npy::text(bytes, order).map(|text| Decoded { text, remark: None });
     }
     if let Some((_, what, cure)) = KNOWN.iter().find(|(magic, ..)| bytes.starts_with(magic)) {
         return Err(unsupported(format!("{name} is {what}; {cure}.")));
@@ -69,7 +67,7 @@ pub(crate) fn decode(bytes: &[u8], name: &str, order: usize) -> Result<Decoded, 
     }
 }
 
-fn unsupported(sentence: String) -> Box<Finding> {
+fn unsupported(sentence: String) -> Refused {
     Box::new(Finding::error(Kind::Unsupported, sentence).expected("a text file or a .npy file"))
 }
 

@@ -5,7 +5,7 @@
 //! their places; the crates for this format give doubles.
 
 use super::clean;
-use super::diagnostic::{count, Finding, Findings, Kind};
+use super::diagnostic::{count, Finding, Findings, Kind, Refused};
 use super::raw::{RawCell, RawTable};
 use super::span::Bytes;
 
@@ -62,8 +62,6 @@ pub(crate) fn read(
         }
     }
 }
-
-type Refused = Box<Finding>;
 
 fn refuse(sentence: impl Into<String>, bytes: Bytes, source: &str, expected: &str) -> Refused {
     Box::new(

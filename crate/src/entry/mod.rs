@@ -50,7 +50,7 @@ pub use repair::Repair;
 pub use settings::{DecimalMark, Labels, Layout, Limits, Settings, Shape, SignedWords, Wanted};
 pub use span::Span;
 
-use diagnostic::{Finding, Findings};
+use diagnostic::{Finding, Findings, Refused};
 use reading::Reading;
 use span::Offsets;
 
@@ -204,7 +204,7 @@ pub fn read(input: Input, options: &ReadOptions) -> Entry {
     }
 }
 
-fn check_size(bytes: usize, limits: &Limits) -> Result<(), Box<Finding>> {
+fn check_size(bytes: usize, limits: &Limits) -> Result<(), Refused> {
     if bytes <= limits.bytes {
         return Ok(());
     }

@@ -9,7 +9,7 @@
 //! the hexadecimal notation of C (`0x1.999999999999ap-4`), which cells may hold.
 
 use super::binary::{self, Float};
-use super::diagnostic::{count, excerpt, grouped, Finding, Kind};
+use super::diagnostic::{count, excerpt, grouped, Finding, Kind, Refused};
 
 const MAGIC: &[u8] = b"\x93NUMPY";
 
@@ -19,7 +19,7 @@ pub(crate) fn looks_like(bytes: &[u8]) -> bool {
 }
 
 /// The array as rows of cells apart by tabs.
-pub(crate) fn text(bytes: &[u8], order: usize) -> Result<String, Finding> {
+pub(crate) fn text(bytes: &[u8], order: usize) -> Result<String, Refused> {
     let (header, data) = split(bytes)?;
     let header = Header::parse(header)?;
     let (rows, cols) = match *header.shape.as_slice() {
@@ -27,19 +27,21 @@ pub(crate) fn text(bytes: &[u8], order: usize) -> Result<String, Finding> {
         [cells] => (1, cells),
         [rows, cols] => (rows, cols),
         _ => {
-            return Err(Finding::error(
-                Kind::Unsupported,
-                format!(
-                    "The array in the file has {} dimensions.",
-                    header.shape.len()
-                ),
-            )
-            .expected("a matrix: two dimensions"))
+            return Err(Box::new(
+                Finding::error(
+                    Kind::Unsupported,
+                    format!(
+                        "The array in the file has {} dimensions.",
+                        header.shape.len()
+                    ),
+                )
+                .expected("a matrix: two dimensions"),
+            ))
         }
     };
     let limit = order * order;
     if (rows.min(cols) > 1 && rows.max(cols) > order) || rows.max(cols) > limit {
-        return Err(Finding::error(
+        return Err(Box::new(Finding::error(
             Kind::TooLarge,
             format!(
                 "The file holds {} of {}; matrices up to order {} are worked here.",
@@ -47,25 +49,25 @@ pub(crate) fn text(bytes: &[u8], order: usize) -> Result<String, Finding> {
                 count(cols, "cell"),
                 grouped(order)
             ),
-        ));
+        )));
     }
     let size = header.element.size();
     let needed = rows * cols * size;
     if rows * cols == 0 {
-        return Err(Finding::error(
+        return Err(Box::new(Finding::error(
             Kind::Empty,
             "The array in the file has no cells.",
-        ));
+        )));
     }
     if data.len() < needed {
-        return Err(malformed(
+        return Err(Box::new(malformed(
             format!(
                 "The file is cut off: {} of {} bytes of numbers are there.",
                 grouped(data.len()),
                 grouped(needed)
             ),
             "the whole file",
-        ));
+        )));
     }
     let numbers = Numbers {
         element: &header.element,
@@ -95,7 +97,7 @@ fn malformed(sentence: String, expected: &str) -> Finding {
 }
 
 /// The header's text and the bytes of the numbers.
-fn split(bytes: &[u8]) -> Result<(&str, &[u8]), Finding> {
+fn split(bytes: &[u8]) -> Result<(&str, &[u8]), Refused> {
     let cut = || {
         malformed(
             "The file is cut off in its header.".to_owned(),
@@ -114,14 +116,14 @@ fn split(bytes: &[u8]) -> Result<(&str, &[u8]), Finding> {
             (u32::from_le_bytes(*head) as usize, rest)
         }
         _ => {
-            return Err(malformed(
+            return Err(Box::new(malformed(
                 format!("The file says format version {version}."),
                 "version 1, 2 or 3",
-            ))
+            )))
         }
     };
     if rest.len() < length {
-        return Err(cut());
+        return Err(cut().into());
     }
     let (header, data) = rest.split_at(length);
     let header = std::str::from_utf8(header)
@@ -155,7 +157,7 @@ impl Element {
     }
 
     /// From the description string, as in `<f8`.
-    fn parse(text: &str) -> Result<Self, Finding> {
+    fn parse(text: &str) -> Result<Self, Refused> {
         let refused = || {
             Finding::error(
                 Kind::Unsupported,
@@ -170,7 +172,7 @@ impl Element {
         let big_endian = match order {
             '<' | '|' | '=' => false,
             '>' => true,
-            _ => return Err(refused()),
+            _ => return Err(refused().into()),
         };
         let (sort, width) = match (sort, size) {
             ('i', 1 | 2 | 4 | 8) => (Sort::Signed, size),
@@ -178,7 +180,7 @@ impl Element {
             ('b', 1) => (Sort::Boolean, 1),
             ('f', 2 | 4 | 8 | 16) => (Sort::Float, size),
             ('c', 8 | 16 | 32) => (Sort::Complex, size / 2),
-            _ => return Err(refused()),
+            _ => return Err(refused().into()),
         };
         Ok(Self {
             sort,
@@ -196,7 +198,7 @@ struct Header {
 
 impl Header {
     /// Reads the dictionary of the header.
-    fn parse(text: &str) -> Result<Self, Finding> {
+    fn parse(text: &str) -> Result<Self, Refused> {
         let missing =
             |key: &str| malformed(format!("The header names no {key}."), "a NumPy header");
         let value = |key: &str| {
@@ -210,11 +212,13 @@ impl Header {
         let descr = value("descr").ok_or_else(|| missing("descr"))?;
         let quote = descr.chars().next().filter(|c| matches!(c, '\'' | '"'));
         let Some(quote) = quote else {
-            return Err(Finding::error(
-                Kind::Unsupported,
-                "The array holds records of several fields.",
-            )
-            .expected("an array of plain numbers"));
+            return Err(Box::new(
+                Finding::error(
+                    Kind::Unsupported,
+                    "The array holds records of several fields.",
+                )
+                .expected("an array of plain numbers"),
+            ));
         };
         let descr = descr[1..].split(quote).next().unwrap_or("");
         let order = value("fortran_order").ok_or_else(|| missing("fortran_order"))?;
