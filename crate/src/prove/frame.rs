@@ -14,7 +14,7 @@ use nalgebra::DMatrix;
 
 use crate::matrix::{Dense, ExactMatrix};
 use crate::num::upper::square_sum_up;
-use crate::num::{Dyadic, ExactReal, Toward, Upper};
+use crate::num::{ExactReal, Upper};
 use crate::pairs::Approximation;
 use crate::problem::Problem;
 
@@ -135,11 +135,10 @@ impl Frame {
             let mut plane = DMatrix::zeros(order, order);
             for i in 0..order {
                 for j in 0..order {
-                    let (low, bound) =
-                        low_part(part(i, j), self.weights[i] + self.weights[j] - scale);
-                    plane[(i, j)] = low;
-                    if bound != 0.0 {
-                        bounds.push(bound);
+                    let parts = part(i, j).expansion(scale - self.weights[i] - self.weights[j]);
+                    plane[(i, j)] = parts.lo;
+                    if parts.bound != 0.0 {
+                        bounds.push(parts.bound);
                     }
                 }
             }
@@ -248,13 +247,9 @@ pub(super) fn magnitude(x: &ExactReal) -> Option<i32> {
     if x.is_zero() {
         return None;
     }
-    match x.rational() {
-        Some(ratio) => {
-            let size = ratio.numerator().bit_len() as i64 - ratio.denominator().bit_len() as i64;
-            i32::try_from(size).ok()
-        }
-        None => None,
-    }
+    let around = x.enclose(16);
+    let largest = around.lower.bit_len().max(around.upper.bit_len());
+    i32::try_from(largest as i64 + around.exponent).ok()
 }
 
 /// e with 2^(e−1) ≤ |x| < 2^e, for a normal double.
@@ -329,23 +324,4 @@ fn nearest(x: &ExactReal, power: i32) -> f64 {
         return moved;
     }
     x.nearest(-power)
-}
-
-/// The double next to what rounding x · 2^power to nearest leaves, and a bound
-/// on what that misses.
-fn low_part(x: &ExactReal, power: i32) -> (f64, f64) {
-    let (Some(ratio), Some(high)) = (x.rational(), Dyadic::from_f64(nearest(x, power))) else {
-        return (0.0, f64::INFINITY);
-    };
-    let rest = ratio - high.scaled(-i64::from(power)).to_rational();
-    let grid = high.magnitude().unwrap_or(-1000) - 120;
-    let low = Dyadic::from_rational(&rest, grid - i64::from(power), Toward::Down)
-        .scaled(i64::from(power));
-    let low = low.to_f64(Toward::Down);
-    let bound = if rest.is_zero() {
-        0.0
-    } else {
-        (low.abs() * f64::EPSILON).next_up() + times_power(1.0, grid.max(-1074))
-    };
-    (low, bound)
 }

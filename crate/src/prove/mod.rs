@@ -11,6 +11,7 @@
 //! binary64 with round to nearest; the model behind the matrix.
 
 mod block;
+mod deep;
 mod diagonal;
 mod enclosure;
 mod frame;
@@ -34,6 +35,7 @@ use crate::num::{Dyadic, Upper};
 use crate::pairs::Approximation;
 use crate::problem::Problem;
 
+use deep::{Outcome, Start};
 use frame::{Frame, FrameError};
 use residual::Residual;
 use spectrum::Spectrum;
@@ -70,7 +72,7 @@ pub fn prove(
             return Proof::nothing(order, conditions);
         }
     };
-    quick(problem, frame, conditions, level, control)
+    climb(problem, frame, conditions, level, control)
 }
 
 fn unusable(reason: FrameError) -> Condition {
@@ -93,8 +95,8 @@ fn unusable(reason: FrameError) -> Condition {
 /// Significant bits given to typed eigenvalues that are no binary fractions.
 const TYPED_BITS: u32 = 120;
 
-/// The quick certificate, with the matrix alone as the last resort.
-fn quick(
+/// Runs the certificates in turn, each only if the level asks for it.
+fn climb(
     problem: &Problem,
     mut frame: Frame,
     mut conditions: Vec<Condition>,
@@ -103,7 +105,9 @@ fn quick(
 ) -> Proof {
     let order = frame.order;
     let (mut gram, mut residual) = residual::measure(&mut frame);
+    let mut start = Start::FromVectors;
     if residual.spectrum(&frame).is_none() {
+        start = Start::FromNothing;
         conditions.push(nonsingular(
             &residual,
             "the proof starts from the matrix alone",
@@ -113,25 +117,155 @@ fn quick(
             frame = bare;
         }
     }
-    let Some(mut spectrum) = residual.spectrum(&frame) else {
-        conditions.push(nonsingular(&residual, "nothing is proven"));
-        return Proof::nothing(order, conditions);
+    let mut proof = match residual.spectrum(&frame) {
+        None => {
+            conditions.push(nonsingular(
+                &residual,
+                "nothing is proven in double precision",
+            ));
+            Proof::nothing(order, conditions)
+        }
+        Some(mut spectrum) => {
+            spectrum.ascend();
+            diagonal::tighten(problem, &mut spectrum, frame.scale(), TYPED_BITS);
+            conditions.push(nonsingular(&residual, ""));
+            conditions.extend(radii(&residual, &frame));
+            Proof::new(Level::Quick, spectrum.finish(frame.scale()), conditions)
+        }
     };
-    spectrum.ascend();
-    diagonal::tighten(problem, &mut spectrum, frame.scale(), TYPED_BITS);
-    conditions.push(nonsingular(&residual, ""));
-    conditions.extend(radii(&residual, &frame));
-    let mut reached = Level::Quick;
-    if level != Level::Quick && control.progress(Stage::Prove, 0.3) == Flow::Continue {
-        if let Some(mut tight) = tight::tight(problem, &frame, &gram) {
-            diagonal::tighten(problem, &mut tight, frame.scale(), TYPED_BITS);
-            spectrum = tight;
-            reached = Level::Tight;
+    let wants_more = level != Level::Quick;
+    if wants_more && control.progress(Stage::Prove, 0.05) == Flow::Cancel {
+        proof.push(cancelled());
+        return closed(proof);
+    }
+    if wants_more && proof.level().is_some() {
+        if let Some(mut spectrum) = tight::tight(problem, &frame, &gram) {
+            diagonal::tighten(problem, &mut spectrum, frame.scale(), TYPED_BITS);
+            proof.replace(Level::Tight, spectrum.finish(frame.scale()));
         }
     }
-    let mut proof = Proof::new(reached, spectrum.finish(frame.scale()), conditions);
-    proof.push(separation(&proof));
+    let digits = match level {
+        Level::Deep { digits } => Some(digits),
+        // Where double precision proves nothing, a small problem is still worth it.
+        Level::Tight if start == Start::FromNothing && order <= RESCUED_ORDER => {
+            Some(RESCUE_DIGITS)
+        }
+        Level::Quick | Level::Tight => None,
+    };
+    if let Some(digits) = digits {
+        if !reaches(&proof, digits) {
+            deepen(problem, &frame, start, digits, &mut proof, control);
+        }
+        if matches!(level, Level::Deep { .. }) {
+            proof.push(digits_reached(&proof, digits));
+        }
+    }
+    closed(proof)
+}
+
+/// Largest order for which the tight level goes deep when X is of no use.
+const RESCUED_ORDER: usize = 40;
+
+/// Digits asked for then.
+const RESCUE_DIGITS: u32 = 20;
+
+fn closed(mut proof: Proof) -> Proof {
+    if proof.level().is_some() {
+        let condition = separation(&proof);
+        proof.push(condition);
+    }
     proof
+}
+
+fn reaches(proof: &Proof, digits: u32) -> bool {
+    proof
+        .digits()
+        .is_some_and(|proven| proven >= i64::from(digits))
+}
+
+fn deepen(
+    problem: &Problem,
+    frame: &Frame,
+    start: Start,
+    digits: u32,
+    proof: &mut Proof,
+    control: &mut dyn Control,
+) {
+    match deep::deep(problem, frame, start, digits, control) {
+        Outcome::Proven {
+            mut spectrum,
+            defect,
+            radius,
+        } => {
+            let bits = digits.saturating_mul(4).max(TYPED_BITS);
+            diagonal::tighten(problem, &mut spectrum, frame.scale(), bits);
+            proof.replace(Level::Deep { digits }, spectrum.finish(frame.scale()));
+            proof.push(Condition::new(
+                ConditionKind::Nonsingular,
+                Verdict::Proved,
+                Some(defect.clone()),
+                format!(
+                    "After refinement ‖XᴴMX − I‖ ≤ {}: X is nonsingular and the metric positive definite.",
+                    figure::at_most(&defect)
+                ),
+            ));
+            let radius = radius.scaled(frame.scale());
+            proof.push(Condition::new(
+                ConditionKind::Radius,
+                Verdict::Proved,
+                Some(radius.clone()),
+                format!(
+                    "After refinement every eigenvalue lies within {} of its approximation.",
+                    figure::at_most(&radius)
+                ),
+            ));
+        }
+        Outcome::MetricRefuted(block) => proof.push(Condition::new(
+            ConditionKind::Nonsingular,
+            Verdict::Refuted,
+            None,
+            format!(
+                "The metric is not positive definite: its leading block of order {block} is not."
+            ),
+        )),
+        Outcome::Nothing => proof.push(Condition::new(
+            ConditionKind::Finished,
+            Verdict::Undecided,
+            None,
+            "The refinement in extended precision did not lead to a proof.".to_string(),
+        )),
+        Outcome::Cancelled => proof.push(cancelled()),
+    }
+}
+
+fn cancelled() -> Condition {
+    Condition::new(
+        ConditionKind::Finished,
+        Verdict::Undecided,
+        None,
+        "The proof was cancelled; what was proven before it stands.".to_string(),
+    )
+}
+
+fn digits_reached(proof: &Proof, digits: u32) -> Condition {
+    let short = proof
+        .enclosures()
+        .iter()
+        .filter(|enclosure| {
+            enclosure
+                .digits()
+                .is_none_or(|proven| proven < i64::from(digits))
+        })
+        .count();
+    let (verdict, sentence) = match (proof.enclosures().is_empty(), short) {
+        (true, _) => (Verdict::Undecided, "No eigenvalue is enclosed.".to_string()),
+        (false, 0) => (Verdict::Proved, format!("Every eigenvalue has {digits} proven significant digits.")),
+        (false, short) => (
+            Verdict::Undecided,
+            format!("{short} of {} eigenvalues have fewer than {digits} proven significant digits; zero may be among them.", proof.order()),
+        ),
+    };
+    Condition::new(ConditionKind::Digits, verdict, None, sentence)
 }
 
 impl Residual {

@@ -171,6 +171,17 @@ impl Proof {
         }
     }
 
+    /// Replaces the bounds by those of a higher level.
+    pub(super) fn replace(
+        &mut self,
+        level: Level,
+        (enclosures, clusters): (Vec<Enclosure>, Vec<Cluster>),
+    ) {
+        self.level = Some(level);
+        self.enclosures = enclosures;
+        self.clusters = clusters;
+    }
+
     pub(super) fn push(&mut self, condition: Condition) {
         self.conditions.push(condition);
     }
