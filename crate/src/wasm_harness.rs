@@ -7,7 +7,7 @@
 //! and makes a fresh instance after one that trapped. Compiled for tests
 //! alone, with the compiler feature `custom_test_frameworks`.
 
-use std::sync::OnceLock;
+use std::cell::OnceCell;
 
 use wasm_bindgen::prelude::*;
 
@@ -15,7 +15,9 @@ extern crate test;
 
 use test::{ShouldPanic, TestDescAndFn, TestFn};
 
-static TESTS: OnceLock<Vec<&'static TestDescAndFn>> = OnceLock::new();
+thread_local! {
+    static TESTS: OnceCell<Vec<&'static TestDescAndFn>> = const { OnceCell::new() };
+}
 
 #[wasm_bindgen]
 extern "C" {
@@ -27,17 +29,19 @@ extern "C" {
 /// Takes the list of tests; the compiler's `main` calls it.
 pub fn keep(tests: &[&'static TestDescAndFn]) {
     std::panic::set_hook(Box::new(|panic| report(&panic.to_string())));
-    TESTS.get_or_init(|| tests.to_vec());
+    TESTS.with(|kept| {
+        kept.get_or_init(|| tests.to_vec());
+    });
 }
 
 fn test(index: usize) -> Option<&'static TestDescAndFn> {
-    TESTS.get()?.get(index).copied()
+    TESTS.with(|kept| kept.get()?.get(index).copied())
 }
 
 /// How many tests there are.
 #[wasm_bindgen(js_name = harnessCount)]
 pub fn count() -> usize {
-    TESTS.get().map_or(0, Vec::len)
+    TESTS.with(|kept| kept.get().map_or(0, Vec::len))
 }
 
 /// The full name of a test.
