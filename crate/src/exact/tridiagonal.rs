@@ -31,6 +31,8 @@ pub struct ExactTridiagonal {
     /// Integer multiples of the basis vectors pₖ, in order; each is primitive.
     /// Column k of the reduction's Q is a unit multiple (in the metric) of it.
     pub basis: Vec<Vec<Gauss>>,
+    /// Squared norms of `basis`, in the metric with its denominators cleared.
+    pub norms: Vec<IBig>,
     /// Bits of the largest integer met on the way.
     pub largest_bits: usize,
 }
@@ -70,6 +72,7 @@ pub fn tridiagonal(
         squares: Vec::with_capacity(order.saturating_sub(1)),
         blocks: Vec::new(),
         basis: Vec::with_capacity(order),
+        norms: Vec::with_capacity(order),
         largest_bits: 0,
     };
     while basis.len() < order {
@@ -102,7 +105,10 @@ pub fn tridiagonal(
         basis.push(step);
         meter.progress(0.3 + 0.7 * basis.len() as f64 / order as f64)?;
     }
-    form.basis = basis.into_iter().map(|step| step.vector).collect();
+    for step in basis {
+        form.basis.push(step.vector);
+        form.norms.push(step.norm);
+    }
     form.largest_bits = meter.largest_bits;
     Ok(form)
 }

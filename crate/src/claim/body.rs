@@ -1,0 +1,104 @@
+//! Rows of figures after a claim's head.
+//!
+//! Rows end at line breaks, semicolons, `],` or `\\`; cells are apart by
+//! commas, tabs, bars or ampersands where there are any, else by blanks.
+
+use super::figure::{raw, Raw};
+
+/// One cell with the multiplicity written behind it (`3 ×2`).
+#[derive(Clone, Debug)]
+pub(super) struct Cell {
+    pub(super) raw: Raw,
+    pub(super) many: usize,
+}
+
+/// One row.
+#[derive(Clone, Debug)]
+pub(super) struct Row {
+    pub(super) cells: Vec<Cell>,
+}
+
+/// A cell that is not a figure.
+pub(super) enum BodyError {
+    Figure {
+        line: usize,
+        place: usize,
+        text: String,
+    },
+}
+
+/// Reads the rows of `text`; `first_line` is the line its first one stands on.
+pub(super) fn rows(text: &str, first_line: usize) -> Result<Vec<Row>, BodyError> {
+    let text = text.replace("],", "];").replace("\\\\", ";");
+    let mut rows = Vec::new();
+    for (offset, line) in text.split('\n').enumerate() {
+        for row in line.split(';') {
+            let bare: String = row
+                .chars()
+                .filter(|c| !matches!(c, '[' | ']' | '{' | '}' | '\r' | '"'))
+                .collect();
+            let cells = cells(&bare, first_line + offset)?;
+            if !cells.is_empty() {
+                rows.push(Row { cells });
+            }
+        }
+    }
+    Ok(rows)
+}
+
+fn cells(row: &str, line: usize) -> Result<Vec<Cell>, BodyError> {
+    const SEPARATORS: [char; 4] = [',', '\t', '|', '&'];
+    let row = row.trim();
+    if row.is_empty() {
+        return Ok(Vec::new());
+    }
+    let texts: Vec<String> = if row.contains(SEPARATORS) {
+        let trimmed = row.trim_matches(|c: char| SEPARATORS.contains(&c) || c.is_whitespace());
+        trimmed
+            .split(SEPARATORS)
+            .map(|cell| cell.trim().to_owned())
+            .collect()
+    } else {
+        words(row)
+    };
+    let mut cells = Vec::with_capacity(texts.len());
+    for (place, text) in texts.iter().enumerate() {
+        let (number, many) = multiplicity(text);
+        let Some(raw) = raw(number) else {
+            return Err(BodyError::Figure {
+                line,
+                place: place + 1,
+                text: text.clone(),
+            });
+        };
+        cells.push(Cell { raw, many });
+    }
+    Ok(cells)
+}
+
+/// Words apart by blanks, with `± t` and `×m` kept to the figure before them.
+fn words(row: &str) -> Vec<String> {
+    let mut words: Vec<String> = Vec::new();
+    let mut join = false;
+    for word in row.split_whitespace() {
+        let tied = word.starts_with(['±', '×']) || word.starts_with("+/-");
+        match words.last_mut() {
+            Some(last) if tied || join => {
+                last.push(' ');
+                last.push_str(word);
+            }
+            _ => words.push(word.to_owned()),
+        }
+        join = word == "±" || word == "×" || word == "+/-";
+    }
+    words
+}
+
+/// `3 ×2` as figure and multiplicity.
+fn multiplicity(text: &str) -> (&str, usize) {
+    let split = text.rsplit_once('×').or_else(|| text.rsplit_once('x'));
+    match split.map(|(number, many)| (number.trim(), many.trim().parse::<usize>())) {
+        Some((number, Ok(many))) if (1..=100_000).contains(&many) => (number, many),
+        _ => (text, 1),
+    }
+}

@@ -1,0 +1,649 @@
+//! From text to a claim.
+//!
+//! A claim is a head and figures. The head is a few plain words up to a colon;
+//! options stand in it behind commas:
+//!
+//! ```text
+//! eigenvalues, truncated: 1.381, 1.381, 3.618
+//! eigenvalue 2: 3.618 ± 0.001
+//! vector for 3.618: 1.000 1.618
+//! matrix 1:
+//!   5.0000 -3.7417 0.0000
+//!   …
+//! ```
+//!
+//! Several claims may follow one another in one text: a worked calculation.
+
+use core::fmt;
+
+use dashu_ratio::RBig;
+
+use super::body::{self, BodyError};
+use super::figure::{raw, spanned, Digits, Figure};
+
+/// What is claimed.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Kind {
+    /// Eigenvalues, or readings of them.
+    Values(Values),
+    /// One eigenvector, any scale and phase.
+    Vector {
+        /// Its eigenvalue, where stated.
+        value: Option<Figure>,
+        /// Its place in ascending order from 1, where stated.
+        place: Option<usize>,
+        /// Components.
+        vector: Vec<Figure>,
+    },
+    /// All eigenvectors as columns, with their values for a decomposition.
+    Vectors {
+        /// n × n, columns are vectors.
+        columns: Table,
+        /// Stated values, in the order of the columns.
+        values: Option<Vec<Figure>>,
+        /// Whether each column must have length one (in the metric).
+        length: Length,
+    },
+    /// A tridiagonal form of the matrix.
+    Tridiagonal {
+        /// n figures.
+        diagonal: Vec<Figure>,
+        /// n − 1 figures, below the diagonal.
+        off_diagonal: Vec<Figure>,
+        /// Figures stated outside the band, with row and column from 0.
+        outside: Vec<(usize, usize, Figure)>,
+        /// Q with A = QTQᴴ, where stated.
+        basis: Option<Table>,
+    },
+    /// The reflector meant for a column.
+    Reflector {
+        /// Column from 1.
+        column: usize,
+        /// What is stated of it.
+        stated: Reflector,
+    },
+    /// The matrix after so many reflectors.
+    State {
+        /// Reflectors applied, from 1.
+        step: usize,
+        /// The matrix.
+        matrix: Table,
+    },
+    /// A triangular factor of the metric (of the matrix, without a metric).
+    Cholesky(Table),
+    /// Coefficients of the characteristic polynomial, highest power first.
+    Polynomial(Vec<Figure>),
+    /// One number.
+    Scalar(Scalar, Figure),
+}
+
+/// Stated eigenvalues.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Values {
+    /// Figures with the multiplicity stated for each.
+    pub figures: Vec<(Figure, usize)>,
+    /// Whether these are meant to be all.
+    pub extent: Extent,
+    /// What the figures measure.
+    pub quantity: Quantity,
+    /// For a single value, its place in ascending order from 1, where stated.
+    pub place: Option<usize>,
+}
+
+/// Whether a list is meant to be complete.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Extent {
+    /// All eigenvalues with multiplicities.
+    All,
+    /// Some of them.
+    Some,
+}
+
+/// How a figure depends on its eigenvalue.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Quantity {
+    /// λ itself.
+    Eigenvalue,
+    /// ω = √λ.
+    AngularFrequency,
+    /// f = √λ/2π.
+    Frequency,
+}
+
+/// Whether vectors are stated with unit length.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Length {
+    /// Any length.
+    Any,
+    /// Length one, in the metric where there is one.
+    Unit,
+}
+
+/// What is stated of a reflector.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Reflector {
+    /// v of H = I − 2vvᴴ/vᴴv.
+    Vector(Vec<Figure>),
+    /// v and s of H = I − s·vvᴴ.
+    Scaled(Vec<Figure>, Figure),
+    /// H itself.
+    Matrix(Table),
+}
+
+/// Single numbers that can be claimed.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Scalar {
+    /// det A.
+    Determinant,
+    /// tr A.
+    Trace,
+    /// Eigenvalues above zero.
+    Positive,
+    /// Eigenvalues below zero.
+    Negative,
+    /// Eigenvalues that are zero.
+    Zero,
+    /// max|λ| / min|λ|.
+    Condition,
+    /// max|λ|.
+    Radius,
+}
+
+/// A rectangle of figures, row by row.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Table {
+    /// Rows.
+    pub rows: usize,
+    /// Columns.
+    pub cols: usize,
+    /// rows · cols figures.
+    pub cells: Vec<Figure>,
+}
+
+impl Table {
+    /// The figure in `row` and `col`, from 0.
+    pub fn at(&self, row: usize, col: usize) -> &Figure {
+        &self.cells[row * self.cols + col]
+    }
+}
+
+/// One claim.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Claim {
+    /// The head as typed, without the colon.
+    pub head: String,
+    /// What it claims.
+    pub kind: Kind,
+    /// How its digits are understood.
+    pub digits: Digits,
+}
+
+/// Why a text is not a claim.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum ClaimError {
+    /// The head names nothing that can be claimed.
+    UnknownKind {
+        /// The head as typed.
+        head: String,
+    },
+    /// An option that is none.
+    UnknownOption {
+        /// The option as typed.
+        option: String,
+    },
+    /// Nothing follows the head.
+    NoFigures {
+        /// The head as typed.
+        head: String,
+    },
+    /// A figure cannot be read.
+    Figure {
+        /// Line of the claim, from 1.
+        line: usize,
+        /// Place in the line, from 1.
+        place: usize,
+        /// The text.
+        text: String,
+    },
+    /// The figures do not have the shape this kind needs.
+    Shape {
+        /// The head as typed.
+        head: String,
+        /// What is needed.
+        needed: &'static str,
+    },
+}
+
+impl fmt::Display for ClaimError {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Self::UnknownKind { head } => write!(
+                f,
+                "“{head}” is nothing that can be claimed; begin with eigenvalue, eigenvalues, vector, \
+                 vectors, decomposition, tridiagonal, reflector, matrix, cholesky, polynomial, \
+                 determinant, trace, positive, negative, zero, condition, radius or frequency, \
+                 then a colon"
+            ),
+            Self::UnknownOption { option } => write!(
+                f,
+                "“{option}” is no option; use truncated, exact, a number of figures such as \
+                 “4 figures”, or a tolerance such as “± 0.01”"
+            ),
+            Self::NoFigures { head } => write!(f, "nothing is stated after “{head}”"),
+            Self::Figure { line, place, text } => {
+                write!(f, "“{text}” (line {line}, figure {place}) is not a number")
+            }
+            Self::Shape { head, needed } => write!(f, "“{head}” needs {needed}"),
+        }
+    }
+}
+
+impl core::error::Error for ClaimError {}
+
+/// Reads one claim.
+///
+/// # Errors
+/// [`ClaimError`] with the place of what cannot be read.
+pub fn read(text: &str) -> Result<Claim, ClaimError> {
+    let (head, rest) = match text.split_once(':') {
+        Some((head, rest)) => (head.trim(), rest),
+        None => (text.trim(), ""),
+    };
+    let mut parts = head.split(',').map(str::trim);
+    let words: Vec<String> = parts
+        .next()
+        .unwrap_or("")
+        .split_whitespace()
+        .map(str::to_lowercase)
+        .collect();
+    let mut digits = Digits::Rounded;
+    let mut length = Length::Any;
+    for option in parts {
+        match option.to_lowercase().as_str() {
+            "orthonormal" | "unit" => length = Length::Unit,
+            other => digits = digits_option(other)?,
+        }
+    }
+    let first_line = text.split(':').next().unwrap_or("").lines().count().max(1);
+    let rows = body::rows(rest, first_line).map_err(|error| match error {
+        BodyError::Figure { line, place, text } => ClaimError::Figure { line, place, text },
+    })?;
+    let head = Head {
+        typed: head,
+        words,
+        length,
+    };
+    if head.words.is_empty() {
+        return Err(ClaimError::UnknownKind {
+            head: head.typed.to_owned(),
+        });
+    }
+    let kind = head.kind(rows, &digits)?;
+    Ok(Claim {
+        head: head.typed.to_owned(),
+        kind,
+        digits,
+    })
+}
+
+/// Cuts a worked calculation into its claims: each begins at a line whose
+/// first word names a kind.
+pub fn split(text: &str) -> Vec<&str> {
+    let mut starts: Vec<usize> = Vec::new();
+    let mut at = 0;
+    for line in text.split_inclusive('\n') {
+        let word: String = line
+            .trim_start()
+            .chars()
+            .take_while(|c| c.is_alphabetic())
+            .collect();
+        if line.contains(':') && KINDS.contains(&word.to_lowercase().as_str()) {
+            starts.push(at);
+        }
+        at += line.len();
+    }
+    let mut claims = Vec::new();
+    for (place, &start) in starts.iter().enumerate() {
+        let end = starts.get(place + 1).copied().unwrap_or(text.len());
+        claims.push(text[start..end].trim());
+    }
+    if claims.is_empty() && !text.trim().is_empty() {
+        claims.push(text.trim());
+    }
+    claims
+}
+
+const KINDS: [&str; 21] = [
+    "eigenvalue",
+    "eigenvalues",
+    "some",
+    "vector",
+    "vectors",
+    "decomposition",
+    "tridiagonal",
+    "reflector",
+    "matrix",
+    "cholesky",
+    "polynomial",
+    "determinant",
+    "trace",
+    "positive",
+    "negative",
+    "zero",
+    "condition",
+    "radius",
+    "frequency",
+    "frequencies",
+    "angular",
+];
+
+fn digits_option(option: &str) -> Result<Digits, ClaimError> {
+    let unknown = || ClaimError::UnknownOption {
+        option: option.to_owned(),
+    };
+    match option {
+        "rounded" => return Ok(Digits::Rounded),
+        "truncated" => return Ok(Digits::Truncated),
+        "exact" => return Ok(Digits::Exact),
+        _ => {}
+    }
+    if let Some(within) = option
+        .strip_prefix('±')
+        .or_else(|| option.strip_prefix("+/-"))
+    {
+        let figure = raw(within).ok_or_else(unknown)?;
+        let figure = spanned(vec![figure], &Digits::Exact)
+            .pop()
+            .ok_or_else(unknown)?;
+        if figure.is_complex() || figure.re.stated < RBig::ZERO {
+            return Err(unknown());
+        }
+        return Ok(Digits::Within(figure.re.stated));
+    }
+    let count = option
+        .strip_suffix("figures")
+        .or_else(|| option.strip_suffix("figure"))
+        .and_then(|count| count.trim().parse::<u32>().ok())
+        .filter(|count| (1..=1000).contains(count));
+    count.map(Digits::Significant).ok_or_else(unknown)
+}
+
+struct Head<'a> {
+    typed: &'a str,
+    words: Vec<String>,
+    length: Length,
+}
+
+impl Head<'_> {
+    fn shape(&self, needed: &'static str) -> ClaimError {
+        ClaimError::Shape {
+            head: self.typed.to_owned(),
+            needed,
+        }
+    }
+
+    fn unknown(&self) -> ClaimError {
+        ClaimError::UnknownKind {
+            head: self.typed.to_owned(),
+        }
+    }
+
+    /// The whole number that is the word at `place`, counted from 1.
+    fn ordinal(&self, place: usize) -> Result<Option<usize>, ClaimError> {
+        let Some(word) = self.words.get(place) else {
+            return Ok(None);
+        };
+        match word.parse() {
+            Ok(number) if number > 0 => Ok(Some(number)),
+            _ => Err(self.unknown()),
+        }
+    }
+
+    fn kind(&self, rows: Vec<body::Row>, digits: &Digits) -> Result<Kind, ClaimError> {
+        if rows.is_empty() {
+            return Err(ClaimError::NoFigures {
+                head: self.typed.to_owned(),
+            });
+        }
+        let words: Vec<&str> = self.words.iter().map(String::as_str).collect();
+        let scalar = |which| Ok(Kind::Scalar(which, self.single(&rows, digits)?));
+        match words.as_slice() {
+            ["eigenvalue", ..] => self.values(&rows, digits, Quantity::Eigenvalue, 1),
+            ["eigenvalues"] => self.list(&rows, digits, Quantity::Eigenvalue, Extent::All),
+            ["some", "eigenvalues"] => self.list(&rows, digits, Quantity::Eigenvalue, Extent::Some),
+            ["frequency", ..] => self.values(&rows, digits, Quantity::Frequency, 1),
+            ["frequencies"] => self.list(&rows, digits, Quantity::Frequency, Extent::All),
+            ["some", "frequencies"] => self.list(&rows, digits, Quantity::Frequency, Extent::Some),
+            ["angular", "frequency", ..] => {
+                self.values(&rows, digits, Quantity::AngularFrequency, 2)
+            }
+            ["angular", "frequencies"] => {
+                self.list(&rows, digits, Quantity::AngularFrequency, Extent::All)
+            }
+            ["vector", ..] => self.vector(&rows, digits),
+            ["vectors"] => {
+                let columns = self.square(table(&rows, digits, 0))?;
+                Ok(Kind::Vectors {
+                    columns,
+                    values: None,
+                    length: self.length,
+                })
+            }
+            ["decomposition"] => self.decomposition(&rows, digits),
+            ["tridiagonal", ..] => self.tridiagonal(&rows, digits),
+            ["reflector", ..] => self.reflector(&rows, digits),
+            ["matrix", _] => {
+                let step = self.ordinal(1)?.ok_or_else(|| self.unknown())?;
+                Ok(Kind::State {
+                    step,
+                    matrix: self.square(table(&rows, digits, 0))?,
+                })
+            }
+            ["cholesky"] => Ok(Kind::Cholesky(self.square(table(&rows, digits, 0))?)),
+            ["polynomial"] => Ok(Kind::Polynomial(flat(&rows, digits))),
+            ["determinant"] => scalar(Scalar::Determinant),
+            ["trace"] => scalar(Scalar::Trace),
+            ["positive"] => scalar(Scalar::Positive),
+            ["negative"] => scalar(Scalar::Negative),
+            ["zero"] => scalar(Scalar::Zero),
+            ["condition"] => scalar(Scalar::Condition),
+            ["radius"] => scalar(Scalar::Radius),
+            _ => Err(self.unknown()),
+        }
+    }
+
+    fn single(&self, rows: &[body::Row], digits: &Digits) -> Result<Figure, ClaimError> {
+        let mut figures = flat(rows, digits);
+        match (figures.pop(), figures.is_empty()) {
+            (Some(figure), true) if !figure.is_complex() => Ok(figure),
+            _ => Err(self.shape("one real figure")),
+        }
+    }
+
+    fn values(
+        &self,
+        rows: &[body::Row],
+        digits: &Digits,
+        quantity: Quantity,
+        place: usize,
+    ) -> Result<Kind, ClaimError> {
+        let place = self.ordinal(place)?;
+        let figure = self.single(rows, digits)?;
+        let many = rows[0].cells[0].many;
+        Ok(Kind::Values(Values {
+            figures: vec![(figure, many)],
+            extent: Extent::Some,
+            quantity,
+            place,
+        }))
+    }
+
+    fn list(
+        &self,
+        rows: &[body::Row],
+        digits: &Digits,
+        quantity: Quantity,
+        extent: Extent,
+    ) -> Result<Kind, ClaimError> {
+        let many = rows
+            .iter()
+            .flat_map(|row| row.cells.iter().map(|cell| cell.many));
+        let figures: Vec<_> = flat(rows, digits).into_iter().zip(many).collect();
+        if figures.iter().any(|(figure, _)| figure.is_complex()) {
+            return Err(self.shape("real figures: eigenvalues of Hermitian problems are real"));
+        }
+        Ok(Kind::Values(Values {
+            figures,
+            extent,
+            quantity,
+            place: None,
+        }))
+    }
+
+    fn vector(&self, rows: &[body::Row], digits: &Digits) -> Result<Kind, ClaimError> {
+        let vector = flat(rows, digits);
+        let (value, place) = match self.words.get(1).map(String::as_str) {
+            Some("for") => {
+                let text = self.words[2..].join(" ");
+                let value = raw(&text)
+                    .and_then(|raw| spanned(vec![raw], digits).pop())
+                    .ok_or_else(|| self.shape("the eigenvalue after “for”"))?;
+                (Some(value), None)
+            }
+            _ => (None, self.ordinal(1)?),
+        };
+        Ok(Kind::Vector {
+            value,
+            place,
+            vector,
+        })
+    }
+
+    fn square(&self, table: Option<Table>) -> Result<Table, ClaimError> {
+        table
+            .filter(|table| table.rows == table.cols)
+            .ok_or_else(|| self.shape("as many figures in each row as there are rows"))
+    }
+
+    fn decomposition(&self, rows: &[body::Row], digits: &Digits) -> Result<Kind, ClaimError> {
+        let needed = "a row of values, then the vectors as columns";
+        let order = rows[0].cells.len();
+        if rows.len() != order + 1 {
+            return Err(self.shape(needed));
+        }
+        let values = flat(&rows[..1], digits);
+        let columns = self.square(table(rows, digits, 1))?;
+        Ok(Kind::Vectors {
+            columns,
+            values: Some(values),
+            length: Length::Unit,
+        })
+    }
+
+    fn tridiagonal(&self, rows: &[body::Row], digits: &Digits) -> Result<Kind, ClaimError> {
+        let with_basis = match self.words[1..]
+            .iter()
+            .map(String::as_str)
+            .collect::<Vec<_>>()[..]
+        {
+            [] => false,
+            ["with", "q"] => true,
+            _ => return Err(self.unknown()),
+        };
+        let width = rows[0].cells.len();
+        // Two rows are diagonal and off-diagonal, unless they are a 2 × 2 form.
+        let lists = rows.len() >= 2 && rows[1].cells.len() + 1 == width;
+        let form_rows = if lists { 2 } else { width };
+        let expected = form_rows + if with_basis { width } else { 0 };
+        if rows.len() != expected {
+            return Err(self.shape(
+                "the n × n form, or a row of n diagonal and a row of n − 1 off-diagonal figures; \
+                 with Q, n rows of Q after it",
+            ));
+        }
+        let basis = if with_basis {
+            Some(self.square(table(rows, digits, form_rows))?)
+        } else {
+            None
+        };
+        if lists {
+            let mut figures = flat(&rows[..2], digits);
+            let off_diagonal = figures.split_off(width);
+            return Ok(Kind::Tridiagonal {
+                diagonal: figures,
+                off_diagonal,
+                outside: Vec::new(),
+                basis,
+            });
+        }
+        let form = self.square(table(&rows[..form_rows], digits, 0))?;
+        let mut diagonal = Vec::new();
+        let mut off_diagonal = Vec::new();
+        let mut outside = Vec::new();
+        for row in 0..width {
+            for col in 0..width {
+                let figure = form.at(row, col).clone();
+                if row == col {
+                    diagonal.push(figure);
+                } else if row == col + 1 {
+                    off_diagonal.push(figure);
+                } else {
+                    outside.push((row, col, figure));
+                }
+            }
+        }
+        Ok(Kind::Tridiagonal {
+            diagonal,
+            off_diagonal,
+            outside,
+            basis,
+        })
+    }
+
+    fn reflector(&self, rows: &[body::Row], digits: &Digits) -> Result<Kind, ClaimError> {
+        let column = self
+            .ordinal(1)?
+            .ok_or_else(|| self.shape("the column it is meant for"))?;
+        let stated = match self.words[2..]
+            .iter()
+            .map(String::as_str)
+            .collect::<Vec<_>>()[..]
+        {
+            [] if rows.len() > 1 && rows[0].cells.len() > 1 => {
+                Reflector::Matrix(self.square(table(rows, digits, 0))?)
+            }
+            [] => Reflector::Vector(flat(rows, digits)),
+            ["scalar", scalar] => {
+                let scalar = raw(scalar)
+                    .and_then(|raw| spanned(vec![raw], digits).pop())
+                    .ok_or_else(|| self.shape("the scalar as a number"))?;
+                Reflector::Scaled(flat(rows, digits), scalar)
+            }
+            _ => return Err(self.unknown()),
+        };
+        Ok(Kind::Reflector { column, stated })
+    }
+}
+
+/// All figures, row by row, spanned as one claim.
+fn flat(rows: &[body::Row], digits: &Digits) -> Vec<Figure> {
+    let raws = rows
+        .iter()
+        .flat_map(|row| row.cells.iter().map(|cell| cell.raw.clone()))
+        .collect();
+    spanned(raws, digits)
+}
+
+/// The rows from `first` on as a rectangle.
+fn table(rows: &[body::Row], digits: &Digits, first: usize) -> Option<Table> {
+    let rows = rows.get(first..)?;
+    let cols = rows.first()?.cells.len();
+    if rows.iter().any(|row| row.cells.len() != cols) {
+        return None;
+    }
+    Some(Table {
+        rows: rows.len(),
+        cols,
+        cells: flat(rows, digits),
+    })
+}
