@@ -6,8 +6,8 @@ use dashu_ratio::RBig;
 use super::compare::{fit, Fit};
 use super::interval::{neg, one, Complex, Precision};
 use super::print;
-use super::read::Table;
 use super::reduction::{Mirror, Sides, Sign, State};
+use super::statement::Table;
 use super::states::{overall, Trail};
 use super::verdict::{Finding, FindingKind};
 

@@ -43,7 +43,7 @@ impl<'a> Evidence<'a> {
     /// Evidence from the exact road.
     ///
     /// # Errors
-    /// As [`crate::exact::spectrum`].
+    /// As [`crate::exact::spectrum()`].
     pub fn exact(
         problem: &Problem,
         limits: &Limits,

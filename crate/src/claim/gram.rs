@@ -11,7 +11,7 @@ use super::evidence::entries;
 use super::exactly::{conj, none, plus, times, Ratio};
 use super::interval::{ends, one, zero, Complex, Precision, Real};
 use super::print;
-use super::read::Table;
+use super::statement::Table;
 use super::verdict::{Finding, FindingKind, Verdict, Word};
 use crate::problem::Problem;
 

@@ -5,7 +5,7 @@ use dashu_ratio::RBig;
 
 use super::evidence::Evidence;
 use super::print;
-use super::read::Values;
+use super::statement::Values;
 use super::verdict::{Finding, FindingKind};
 
 /// Trace and determinant of the problem (of M⁻¹A for a pair), where they are

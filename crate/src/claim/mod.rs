@@ -1,6 +1,6 @@
 //! Claims: stated numbers held against exact arithmetic and enclosures.
 //!
-//! A claim ([`read`]) is a kind in plain words and figures. It is judged
+//! A claim ([`read()`]) is a kind in plain words and figures. It is judged
 //! ([`judge`]) against the exact road where the input allows it, else against
 //! proven enclosures, deepened until the verdict is decided or a cap is
 //! reached. A verdict is `confirmed`, `refuted` or `undecided`; the first two
@@ -13,6 +13,7 @@
 //!
 //! What a verdict does not say: that the matrix is the right one.
 
+mod basis;
 mod body;
 mod causes;
 mod compare;
@@ -26,14 +27,16 @@ mod gram;
 mod interval;
 mod invariants;
 mod matching;
+mod misprint;
 mod polynomials;
 mod print;
-pub mod read;
+mod read;
 mod reduction;
 mod reflectors;
 mod scalars;
 mod space;
 mod standard;
+pub mod statement;
 mod states;
 mod surds;
 mod values;
@@ -41,7 +44,8 @@ mod vectors;
 pub mod verdict;
 
 pub use evidence::{EnclosedValue, Evidence};
-pub use read::{read, split, Claim, ClaimError, Kind};
+pub use read::{read, split};
+pub use statement::{Claim, ClaimError, Kind};
 pub use verdict::{Finding, FindingKind, Freedom, Item, Verdict, Word};
 
 use crate::control::{Control, Flow, Stage};

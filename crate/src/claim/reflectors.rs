@@ -10,10 +10,10 @@ use super::compare::{distance, fit, Fit};
 use super::figure::Figure;
 use super::interval::{one, Complex, Precision};
 use super::print;
-use super::read::{Reflector, Table};
 use super::reduction::{Mirror, Sign, State};
 use super::space::{meets, Meeting};
 use super::standard::standard;
+use super::statement::{Reflector, Table};
 use super::states::PRECISIONS;
 use super::surds::Surds;
 use super::vectors::complex_text;
@@ -66,7 +66,7 @@ pub(super) fn judge(column: usize, stated: &Reflector, problem: &Problem) -> Ver
 /// A stated reflector with vectors of full length.
 enum Padded {
     Vector(Vec<Figure>),
-    Scaled(Vec<Figure>, Figure),
+    Scaled(Vec<Figure>, Box<Figure>),
     Matrix(Table),
 }
 

@@ -8,7 +8,7 @@ use super::figure::{size, Figure};
 use super::interval::{ends, zero, Precision};
 use super::invariants::known;
 use super::print;
-use super::read::Scalar;
+use super::statement::Scalar;
 use super::verdict::{Drawn, Item, Verdict, Word};
 use crate::problem::Problem;
 

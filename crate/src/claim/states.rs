@@ -6,9 +6,9 @@ use super::causes;
 use super::compare::{departure, distance, fit, Fit};
 use super::interval::Precision;
 use super::print;
-use super::read::Table;
 use super::reduction::{Mirror, Sign, State};
 use super::standard::standard;
+use super::statement::Table;
 use super::verdict::{Freedom, Verdict, Word};
 use crate::problem::Problem;
 

@@ -5,7 +5,7 @@ use dashu_ratio::RBig;
 
 use super::exactly::rational_cells;
 use super::figure::Figure;
-use super::read::Table;
+use super::statement::Table;
 use crate::num::exact::ArithmeticError;
 use crate::num::ExactReal;
 use crate::problem::Problem;

@@ -11,15 +11,16 @@ use super::evidence::{EnclosedValue, Evidence};
 use super::figure::Figure;
 use super::interval::{ends, Precision};
 use super::matching::matching;
+use super::misprint::misprint;
 use super::print;
-use super::read::{Extent, Quantity, Values};
+use super::statement::{Extent, Quantity, Values};
 use super::verdict::{Drawn, Finding, FindingKind, Freedom, Item, Verdict, Word};
 use crate::num::ExactReal;
 
 /// A stated interval in terms of λ, as two intervals between which the true
 /// one lies.
 #[derive(Clone, Debug)]
-struct Band {
+pub(super) struct Band {
     /// What is surely claimed.
     inner: (RBig, RBig),
     /// What may be claimed.
@@ -28,14 +29,14 @@ struct Band {
 
 /// How a stated interval and a proven one stand.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
-enum Fit {
+pub(super) enum Fit {
     Inside,
     Outside,
     Unclear,
 }
 
 impl Band {
-    fn new(figure: &Figure, quantity: Quantity, precision: Precision) -> Self {
+    pub(super) fn new(figure: &Figure, quantity: Quantity, precision: Precision) -> Self {
         let (low, high) = (figure.re.low.clone(), figure.re.high.clone());
         if quantity == Quantity::Eigenvalue {
             return Self {
@@ -69,7 +70,7 @@ impl Band {
         }
     }
 
-    fn fit(&self, value: &EnclosedValue) -> Fit {
+    pub(super) fn fit(&self, value: &EnclosedValue) -> Fit {
         if self.inner.0 <= value.lower && value.upper <= self.inner.1 {
             Fit::Inside
         } else if value.upper < self.outer.0 || self.outer.1 < value.lower {
@@ -240,9 +241,12 @@ impl<'a> Attempt<'a> {
                 ),
             };
             verdict.findings.push(Finding::new(kind, text));
-            verdict
-                .findings
-                .extend(slip(stated.figure, &self.copies, claim.quantity, evidence));
+            verdict.findings.extend(misprint(
+                stated.figure,
+                &self.copies,
+                claim.quantity,
+                evidence,
+            ));
             let text = print::at_least(&off);
             let mut line = item(
                 stated.figure,
@@ -465,62 +469,4 @@ fn missing(place: usize, claim: &Values, evidence: &Evidence<'_>) -> Item {
         off_by: None,
         drawn,
     }
-}
-
-/// Slips of the pen that explain a wrong figure: a lost sign, or two
-/// neighbouring digits exchanged. Named only if the repaired figure is right.
-fn slip(
-    figure: &Figure,
-    copies: &[usize],
-    quantity: Quantity,
-    evidence: &Evidence<'_>,
-) -> Vec<Finding> {
-    let fits = |text: &str| {
-        let Some(raw) = super::figure::raw(text) else {
-            return false;
-        };
-        let Some(mut repaired) =
-            super::figure::spanned(vec![raw], &super::figure::Digits::Rounded).pop()
-        else {
-            return false;
-        };
-        // The repaired figure claims what the typed one did, about its number.
-        let shift = &repaired.re.stated - &figure.re.stated;
-        repaired.re.low = &figure.re.low + &shift;
-        repaired.re.high = &figure.re.high + shift;
-        let band = Band::new(&repaired, quantity, evidence.precision());
-        copies
-            .iter()
-            .any(|&place| band.fit(&evidence.values()[place]) == Fit::Inside)
-    };
-    let negated = match figure.text.strip_prefix(['-', '−']) {
-        Some(rest) => rest.to_owned(),
-        None => format!("-{}", figure.text),
-    };
-    if !figure.re.stated.is_zero() && fits(&negated) {
-        return vec![Finding::new(
-            FindingKind::Cause,
-            format!("with the other sign, {negated} would be right"),
-        )];
-    }
-    let characters: Vec<char> = figure.text.chars().collect();
-    for place in 1..characters.len() {
-        let pair = (characters[place - 1], characters[place]);
-        if pair.0 == pair.1 || !pair.0.is_ascii_digit() || !pair.1.is_ascii_digit() {
-            continue;
-        }
-        let mut exchanged = characters.clone();
-        exchanged.swap(place - 1, place);
-        let exchanged: String = exchanged.into_iter().collect();
-        if fits(&exchanged) {
-            return vec![Finding::new(
-                FindingKind::Cause,
-                format!(
-                    "with the digits {} and {} exchanged, {exchanged} would be right",
-                    pair.0, pair.1
-                ),
-            )];
-        }
-    }
-    Vec::new()
 }

@@ -1,5 +1,7 @@
 //! Each kind of claim, right and wrong, by hand.
 
+use dashu_ratio::RBig;
+
 use super::*;
 use crate::claim::{ClaimError, Freedom};
 

@@ -5,8 +5,6 @@ mod published;
 mod random;
 mod slips;
 
-use dashu_ratio::RBig;
-
 use crate::claim::{judge, read, Evidence, FindingKind, Verdict, Word};
 use crate::control::Unattended;
 use crate::exact::Limits;
@@ -74,8 +72,4 @@ fn expect_cause(problem: &Problem, text: &str, words: &str) {
         .iter()
         .any(|finding| finding.kind == FindingKind::Cause && finding.text.contains(words));
     assert!(named, "no cause with “{words}”: {text}\n{verdict:#?}");
-}
-
-fn ratio(numerator: i64, denominator: u64) -> RBig {
-    RBig::from_parts(numerator.into(), denominator.into())
 }
