@@ -12,6 +12,7 @@
 mod back;
 mod convention;
 mod rotations;
+mod twisted;
 
 #[cfg(test)]
 mod tests;
@@ -68,6 +69,17 @@ impl fmt::Display for PairsError {
 
 impl std::error::Error for PairsError {}
 
+/// How the vectors of the tridiagonal form are found.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Road {
+    /// Twisted factorisations, O(n²) where values are apart; the result is
+    /// checked, and the rotations take over when it does not pass.
+    #[default]
+    Checked,
+    /// Accumulation of the recorded rotations, about 5·n³ operations.
+    Rotations,
+}
+
 /// Eigenpairs, ascending, with vectors in the stated phase.
 ///
 /// # Errors
@@ -76,6 +88,7 @@ impl std::error::Error for PairsError {}
 pub fn pairs(
     reduction: &Reduction,
     iteration: &Iteration,
+    road: Road,
     control: &mut dyn Control,
 ) -> Result<Approximation, PairsError> {
     let order = reduction.order();
@@ -92,7 +105,12 @@ pub fn pairs(
         Flow::Continue => Ok(()),
     };
     on(control, 0.0)?;
-    let basis = rotations::vectors(&reduction.tridiagonal, iteration, &ascending);
+    let basis = match road {
+        Road::Checked => twisted::vectors(&reduction.tridiagonal, iteration, &ascending).ok(),
+        Road::Rotations => None,
+    };
+    let basis =
+        basis.unwrap_or_else(|| rotations::vectors(&reduction.tridiagonal, iteration, &ascending));
     on(control, 0.5)?;
     let mut vectors = back::transform(reduction, basis);
     convention::fix_phases(&mut vectors);

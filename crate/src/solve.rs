@@ -5,7 +5,7 @@ use crate::iterate::{iterate, IterateError, Iteration, Limits};
 use crate::ledger::Recorder;
 use crate::matrix::norms::power_of_two;
 use crate::matrix::Dense;
-use crate::pairs::{pairs, Approximation, PairsError};
+use crate::pairs::{pairs, Approximation, PairsError, Road};
 use crate::problem::Rounded;
 use crate::reduce::{reduce, ReduceError, Reduction};
 use std::fmt;
@@ -56,7 +56,8 @@ pub fn solve(
     let reduction = reduce(rounded, recorder, control).map_err(SolveError::Reduce)?;
     let iteration = iterate(&reduction.tridiagonal, Limits::default(), recorder, control)
         .map_err(SolveError::Iterate)?;
-    let approximation = pairs(&reduction, &iteration, control).map_err(SolveError::Pairs)?;
+    let approximation =
+        pairs(&reduction, &iteration, Road::Checked, control).map_err(SolveError::Pairs)?;
     Ok(Solution {
         reduction,
         iteration,

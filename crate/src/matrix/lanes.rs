@@ -8,8 +8,8 @@ use std::ops::{Add, Mul, Sub};
 #[cfg(all(target_arch = "wasm32", target_feature = "simd128"))]
 mod register {
     use core::arch::wasm32::{
-        f64x2_add, f64x2_div, f64x2_extract_lane, f64x2_mul, f64x2_splat, f64x2_sub, v128,
-        v128_load, v128_store,
+        f64x2_abs, f64x2_add, f64x2_div, f64x2_extract_lane, f64x2_lt, f64x2_mul, f64x2_splat,
+        f64x2_sub, v128, v128_bitselect, v128_load, v128_store,
     };
 
     pub type Register = v128;
@@ -48,6 +48,14 @@ mod register {
     pub fn div(x: Register, y: Register) -> Register {
         f64x2_div(x, y)
     }
+    #[inline(always)]
+    pub fn abs(x: Register) -> Register {
+        f64x2_abs(x)
+    }
+    #[inline(always)]
+    pub fn choose(x: Register, y: Register, less: Register, otherwise: Register) -> Register {
+        v128_bitselect(less, otherwise, f64x2_lt(x, y))
+    }
 }
 
 #[cfg(not(all(target_arch = "wasm32", target_feature = "simd128")))]
@@ -85,6 +93,20 @@ mod register {
     #[inline(always)]
     pub fn div(x: Register, y: Register) -> Register {
         [x[0] / y[0], x[1] / y[1]]
+    }
+    #[inline(always)]
+    pub fn abs(x: Register) -> Register {
+        [x[0].abs(), x[1].abs()]
+    }
+    #[inline(always)]
+    pub fn choose(x: Register, y: Register, less: Register, otherwise: Register) -> Register {
+        std::array::from_fn(|lane| {
+            if x[lane] < y[lane] {
+                less[lane]
+            } else {
+                otherwise[lane]
+            }
+        })
     }
 }
 
@@ -128,6 +150,19 @@ impl Lanes {
     #[inline(always)]
     pub fn over(self, divisor: Self) -> Self {
         Self(register::div(self.0, divisor.0))
+    }
+
+    /// Lane-wise modulus.
+    #[inline(always)]
+    pub fn abs(self) -> Self {
+        Self(register::abs(self.0))
+    }
+
+    /// Lane by lane: `less` where self < `bound`, `otherwise` elsewhere (also
+    /// where either is not a number).
+    #[inline(always)]
+    pub fn where_below(self, bound: Self, less: Self, otherwise: Self) -> Self {
+        Self(register::choose(self.0, bound.0, less.0, otherwise.0))
     }
 }
 
