@@ -1,7 +1,16 @@
 //! From what the entry stage understood to what the page is told.
 
-use super::reading::{Answer, Cell, Diagnostic, Question, Repair, Severity, TextReading};
-use crate::entry::{self, Entry, Settings};
+use nalgebra::DMatrix;
+
+use super::reading::{
+    Answer, Cell, Diagnostic, DisagreeingPair, Question, Repair, Severity, TextReading,
+    ToleranceCell,
+};
+use crate::entry::{self, CellValue, Entry, Origin, Settings};
+use crate::matrix::Dense;
+use crate::num::ExactReal;
+use crate::problem::Disagreement;
+use crate::report::map::{self, MagnitudePicture};
 
 /// Largest order whose cells are handed to the grid one by one.
 const LARGEST_GRID: usize = 40;
@@ -20,11 +29,12 @@ pub(super) fn text_reading(text: &str, entry: &Entry, settings: &Settings) -> Te
             .map(|asked| question(asked, settings)),
         answered: *settings != Settings::default(),
         disagreements: None,
+        adjusted: None,
         row_labels: entry.row_labels.clone(),
         col_labels: entry.col_labels.clone(),
-        tolerances: Vec::new(),
+        tolerances: tolerances(text, entry),
         cells: cells(text, entry),
-        map: None,
+        map: picture(entry),
     }
 }
 
@@ -45,6 +55,55 @@ fn is_complex(entry: &Entry) -> bool {
         .iter()
         .filter_map(|cell| cell.value.as_ref())
         .any(|value| !value.im.is_zero())
+}
+
+fn tolerances(text: &str, entry: &Entry) -> Vec<ToleranceCell> {
+    let written = entry.cells.iter().enumerate().filter(|(_, cell)| {
+        cell.origin == Origin::Given
+            && cell
+                .value
+                .as_ref()
+                .is_some_and(|value| value.tolerance.is_some())
+    });
+    written
+        .map(|(at, cell)| ToleranceCell {
+            row: (at / entry.cols + 1) as u32,
+            col: (at % entry.cols + 1) as u32,
+            text: cell_text(text, cell),
+        })
+        .collect()
+}
+
+/// The picture of a square of cells; a cell that could not be read is blank.
+fn picture(entry: &Entry) -> Option<MagnitudePicture> {
+    if entry.rows != entry.cols || entry.rows == 0 {
+        return None;
+    }
+    let part = |row: usize, col: usize, of: fn(&CellValue) -> &ExactReal| {
+        let value = entry.cell(row, col).and_then(|cell| cell.value.as_ref());
+        value.map_or(0.0, |value| of(value).nearest(0))
+    };
+    let plane = |of: fn(&CellValue) -> &ExactReal| {
+        DMatrix::from_fn(entry.rows, entry.cols, |row, col| part(row, col, of))
+    };
+    let re = plane(|value| &value.re);
+    let dense = if is_complex(entry) {
+        Dense::complex(re, plane(|value| &value.im))
+    } else {
+        Dense::real(re)
+    };
+    Some(map::picture(&dense, 0))
+}
+
+/// One pair of mirrored cells that disagree.
+pub(super) fn pair(found: &Disagreement) -> DisagreeingPair {
+    DisagreeingPair {
+        row: found.row as u32 + 1,
+        col: found.col as u32 + 1,
+        lower: found.lower.clone(),
+        upper: found.upper.clone(),
+        difference: found.difference.clone(),
+    }
 }
 
 fn diagnostic(found: &entry::Diagnostic) -> Diagnostic {
@@ -93,11 +152,7 @@ fn cells(text: &str, entry: &Entry) -> Option<Vec<Vec<Cell>>> {
         return None;
     }
     let cell = |cell: &entry::Cell| Cell {
-        text: text
-            .get(cell.span.start as usize..cell.span.end as usize)
-            .unwrap_or_default()
-            .trim()
-            .to_owned(),
+        text: cell_text(text, cell),
         from: cell.span.utf16_start,
         to: cell.span.utf16_end,
     };
@@ -108,4 +163,10 @@ fn cells(text: &str, entry: &Entry) -> Option<Vec<Vec<Cell>>> {
             .map(|row| row.iter().map(cell).collect())
             .collect(),
     )
+}
+
+/// The text of a cell; empty for one that the layout implies.
+fn cell_text(text: &str, cell: &entry::Cell) -> String {
+    let (start, end) = (cell.span.start as usize, cell.span.end as usize);
+    text.get(start..end).unwrap_or_default().trim().to_owned()
 }

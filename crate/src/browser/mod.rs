@@ -8,19 +8,25 @@
 mod convert;
 pub mod document;
 mod edit;
+mod open;
+mod read;
 pub mod reading;
 
 use tsify::Ts;
 use wasm_bindgen::prelude::*;
 
-use crate::entry::{self, Entry, ReadOptions, Settings, Wanted};
+use crate::entry;
 use document::ProblemDocument;
-use reading::{Reading, TextEdits, TextReading, Which};
+use read::Ready;
+use reading::{GridEdit, Opened, Reading, TextChange, Which};
 
 /// What the worker holds: the problem last read and what was found of it.
 #[wasm_bindgen]
 #[derive(Default)]
-pub struct Workbench {}
+pub struct Workbench {
+    /// The problem last read, if it can be solved.
+    ready: Option<Ready>,
+}
 
 #[wasm_bindgen]
 impl Workbench {
@@ -31,24 +37,16 @@ impl Workbench {
         Self::default()
     }
 
-    /// Reads the whole document.
+    /// Reads the whole document and holds its problem for what comes next.
     ///
     /// # Errors
     /// If the document is not of the expected form; whatever is wrong with the
     /// texts in it is in the reading.
     pub fn read(&mut self, document: Ts<ProblemDocument>) -> Result<Ts<Reading>, JsError> {
         let document = document.to_rust()?;
-        let (matrix, entry) = read_text(&document, Which::Matrix)?;
-        let metric = match &document.metric {
-            Some(_) => Some(read_text(&document, Which::Metric)?.0),
-            None => None,
-        };
-        let reading = Reading {
-            matrix,
-            metric,
-            parameters: Vec::new(),
-            ready: entry.is_usable(),
-        };
+        self.ready = None;
+        let (reading, ready) = read::document(&document)?;
+        self.ready = ready;
         Ok(Ts::from_rust(&reading)?)
     }
 
@@ -61,29 +59,35 @@ impl Workbench {
         document: Ts<ProblemDocument>,
         which: Ts<Which>,
         key: &str,
-    ) -> Result<Ts<TextEdits>, JsError> {
+    ) -> Result<Ts<TextChange>, JsError> {
         let document = document.to_rust()?;
         let repair: entry::Repair = serde_json::from_str(key)?;
         let before = document.text(which.to_rust()?);
         let after = entry::repair::apply(before, &repair);
-        Ok(Ts::from_rust(&edit::between(before, &after))?)
+        Ok(Ts::from_rust(&edit::between(before, &after, None))?)
     }
-}
 
-fn read_text(document: &ProblemDocument, which: Which) -> Result<(TextReading, Entry), JsError> {
-    let settings: Settings = match document.layout(which) {
-        Some(key) => serde_json::from_str(key)?,
-        None => Settings::default(),
-    };
-    let options = ReadOptions {
-        wanted: match which {
-            Which::Matrix => Wanted::Square,
-            Which::Metric => Wanted::Metric,
-        },
-        settings,
-        ..ReadOptions::default()
-    };
-    let text = document.text(which);
-    let entry = entry::read(entry::Input::Text(text), &options);
-    Ok((convert::text_reading(text, &entry, &settings), entry))
+    /// The change of one text that an edit in the grid makes.
+    ///
+    /// # Errors
+    /// If the document is not of the expected form.
+    pub fn edit_grid(
+        &self,
+        document: Ts<ProblemDocument>,
+        which: Ts<Which>,
+        edit: Ts<GridEdit>,
+    ) -> Result<Ts<TextChange>, JsError> {
+        let document = document.to_rust()?;
+        let change = read::edited(&document, which.to_rust()?, edit.to_rust()?)?;
+        Ok(Ts::from_rust(&change)?)
+    }
+
+    /// What a file holds: a document of ours, or a matrix in any form that is
+    /// read, or a sentence saying why neither.
+    ///
+    /// # Errors
+    /// Only if the answer cannot be handed over.
+    pub fn open_file(&self, bytes: &[u8], name: &str) -> Result<Ts<Opened>, JsError> {
+        Ok(Ts::from_rust(&open::file(bytes, name))?)
+    }
 }

@@ -42,9 +42,12 @@ pub struct TextReading {
     pub question: Option<Question>,
     /// Whether a choice made earlier decides how the text is read.
     pub answered: bool,
-    /// Set where mirrored cells disagree.
+    /// Set where mirrored cells disagree and nothing was chosen yet.
     #[tsify(optional)]
     pub disagreements: Option<Disagreements>,
+    /// What was chosen for mirrored cells that disagree, if anything was.
+    #[tsify(optional)]
+    pub adjusted: Option<Adjustment>,
     /// Row labels, or none.
     pub row_labels: Vec<String>,
     /// Column labels, or none.
@@ -150,9 +153,6 @@ pub struct Disagreements {
     pub pairs: Vec<DisagreeingPair>,
     /// Whether all differences are of the size of rounding errors.
     pub rounding_sized: bool,
-    /// The choice in force, if one was made.
-    #[tsify(optional)]
-    pub chosen: Option<Adjustment>,
 }
 
 /// One pair of mirrored cells that disagree.
@@ -205,33 +205,71 @@ pub enum Which {
     Metric,
 }
 
-/// Replacements of stretches of one text, all counted in the text as it was.
+/// An edit of one text made cell by cell; rows and columns from 0.
 #[derive(Clone, Debug, Serialize, Deserialize, Tsify)]
-pub struct TextEdits {
-    /// In order of position, without overlap.
-    pub edits: Vec<TextEdit>,
+#[serde(tag = "act", rename_all = "lowercase")]
+pub enum GridEdit {
+    /// One cell gets a new text.
+    Set {
+        /// Its row.
+        row: u32,
+        /// Its column.
+        col: u32,
+        /// The new text.
+        text: String,
+        /// Whether the cell across the diagonal follows.
+        mirror: Mirroring,
+    },
+    /// A block of cells, from one cell on to the right and down.
+    Paste {
+        /// Row of its first cell.
+        row: u32,
+        /// Column of its first cell.
+        col: u32,
+        /// The block as text.
+        block: String,
+        /// Whether the cells across the diagonal follow.
+        mirror: Mirroring,
+    },
+    /// A row and a column of zeros in front of this one.
+    Insert {
+        /// The place.
+        at: u32,
+    },
+    /// This row and column go.
+    Remove {
+        /// The place.
+        at: u32,
+    },
+    /// The text becomes a zero matrix.
+    Zeros {
+        /// Its order.
+        order: u32,
+    },
 }
 
-/// One replacement.
+/// Whether an edit is carried over the diagonal.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize, Tsify)]
+#[serde(rename_all = "lowercase")]
+pub enum Mirroring {
+    /// The mirrored cell gets the complex conjugate.
+    Conjugate,
+    /// Only the cell itself changes.
+    Off,
+}
+
+/// A change of one text, and how it is to be read from then on.
 #[derive(Clone, Debug, Serialize, Deserialize, Tsify)]
-pub struct TextEdit {
-    /// Start of the stretch.
+pub struct TextChange {
+    /// Start of the stretch replaced.
     pub from: u32,
     /// End of the stretch.
     pub to: u32,
     /// What takes its place.
     pub insert: String,
-}
-
-/// Cells to set, from one cell on to the right and down.
-#[derive(Clone, Debug, Serialize, Deserialize, Tsify)]
-pub struct CellBlock {
-    /// Row of the first cell, from 0.
-    pub row: u32,
-    /// Its column, from 0.
-    pub col: u32,
-    /// The texts, row by row.
-    pub cells: Vec<Vec<String>>,
+    /// What to put into the document's choices if a layout was chosen there.
+    #[tsify(optional)]
+    pub layout: Option<String>,
 }
 
 /// A document opened from a file, a link or a repair, or why it was not.

@@ -31,7 +31,7 @@ export function isUntouchedExample(): boolean {
 }
 
 async function open(example: Example): Promise<void> {
-  const opened = await withWorkbench((bench) => bench.open_file(new TextEncoder().encode(example.json)));
+  const opened = await withWorkbench((bench) => bench.open_file(new TextEncoder().encode(example.json), `${example.key}.json`));
   if (opened.outcome === 'document') replaceDocument(opened.document);
   else if (opened.outcome === 'refused') notice.value = { tone: 'trouble', text: opened.reason };
 }

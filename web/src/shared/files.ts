@@ -16,7 +16,7 @@ export async function openFile(file: File): Promise<void> {
   }
   try {
     const bytes = new Uint8Array(await file.arrayBuffer());
-    const opened = await withWorkbench((bench) => bench.open_file(bytes));
+    const opened = await withWorkbench((bench) => bench.open_file(bytes, file.name));
     switch (opened.outcome) {
       case 'document':
         replaceDocument(opened.document);

@@ -6,7 +6,7 @@
  */
 import { effect } from '@preact/signals';
 
-import { latestReading, latestSolution, reportTrouble, sheet, work } from './store';
+import { latestReading, latestSolution, notice, type Notice, reportTrouble, sheet, work } from './store';
 import { callback, Ended, endWorker, withWorkbench } from './worker';
 
 const TYPING_PAUSE_MS = 180;
@@ -14,6 +14,8 @@ const TYPING_PAUSE_MS = 180;
 /** Rises with every run and cancel; a run whose number is past says no more. */
 let turn = 0;
 let running = false;
+/** What the last failed run said; it goes when a run succeeds. */
+let complaint: Notice | null = null;
 
 async function run(): Promise<void> {
   turn += 1;
@@ -38,11 +40,14 @@ async function run(): Promise<void> {
         latestSolution.value = { revision, value: solved };
       }
     });
-    if (isCurrent()) work.value = { state: 'idle' };
+    if (!isCurrent()) return;
+    work.value = { state: 'idle' };
+    if (complaint !== null && notice.value === complaint) notice.value = null;
   } catch (reason) {
     if (!isCurrent() || reason instanceof Ended) return;
     work.value = { state: 'failed', reason: reason instanceof Error ? reason.message : String(reason) };
     reportTrouble(reason);
+    complaint = notice.value;
   } finally {
     if (isCurrent()) running = false;
   }

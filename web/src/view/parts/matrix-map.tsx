@@ -29,6 +29,14 @@ function scaleOf(map: MagnitudePicture): Scale {
   return { low: Math.min(low, high - 1), high };
 }
 
+/** Where on the scale the smallest entry stands, as a share of it. */
+function startOf(map: MagnitudePicture): string {
+  const { low, high } = scaleOf(map);
+  const least = map.decades.reduce((min, decade) => (Number.isFinite(decade) ? Math.min(min, decade) : min), high);
+  const share = high > low ? (least - low) / (high - low) : 0;
+  return `${String(Math.round(100 * (FAINTEST + (1 - FAINTEST) * share)))}%`;
+}
+
 function colourOf(style: CSSStyleDeclaration, negative: boolean, depth: number): string {
   const name = negative ? '--shade-negative' : '--shade';
   const low = style.getPropertyValue(`${name}-low`);
@@ -103,7 +111,7 @@ export function MatrixMap({ map, title }: { map: MagnitudePicture; title: string
   return (
     <figure class="map">
       <canvas ref={canvas} role="img" aria-label={`${title}. ${description(map)}`} />
-      <figcaption class="map-legend">
+      <figcaption class="map-legend" style={{ '--start': startOf(map) }}>
         <span class="ramp" aria-hidden="true" />
         <span class="ramp negative" aria-hidden="true" />
         <span class="ends">

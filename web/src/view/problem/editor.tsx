@@ -1,5 +1,5 @@
 /** The text of a matrix, with what was found in it marked where it stands. */
-import { defaultKeymap, history, historyKeymap, redo, undo } from '@codemirror/commands';
+import { defaultKeymap, history, historyKeymap, isolateHistory, redo, undo } from '@codemirror/commands';
 import { lintGutter, setDiagnostics, type Diagnostic as Marked } from '@codemirror/lint';
 import { EditorState } from '@codemirror/state';
 import { drawSelection, EditorView, keymap, lineNumbers, placeholder } from '@codemirror/view';
@@ -9,7 +9,7 @@ import { useEffect, useRef } from 'preact/hooks';
 import type { Diagnostic, Repair } from '../../shared/generated/eigenledger';
 
 /** One replacement of a stretch of the text, offsets in UTF-16 code units. */
-export interface TextChange {
+export interface Replacement {
   readonly from: number;
   readonly to: number;
   readonly insert: string;
@@ -17,8 +17,8 @@ export interface TextChange {
 
 /** What other views of the same text may ask of the editor. */
 export interface EditorHandle {
-  /** Replaces stretches in one step that one undo takes back. */
-  readonly change: (changes: readonly TextChange[]) => void;
+  /** Replaces a stretch in one step that one undo takes back. */
+  readonly change: (replacement: Replacement) => void;
   readonly undo: () => void;
   readonly redo: () => void;
   /** Selects a stretch, scrolls to it and gives the editor the keyboard. */
@@ -50,6 +50,16 @@ const theme = EditorView.theme({
   '&.cm-focused > .cm-scroller > .cm-selectionLayer .cm-selectionBackground, .cm-selectionBackground': {
     backgroundColor: 'var(--accent-soft)',
   },
+  '.cm-lintRange-error, .cm-lintRange-warning': {
+    backgroundImage: 'none',
+    textDecoration: 'underline wavy var(--shade-negative-high)',
+    textDecorationSkipInk: 'none',
+  },
+  '.cm-lintRange-info': { backgroundImage: 'none', textDecoration: 'underline dotted var(--accent)' },
+  '.cm-lint-marker': { content: 'none', width: '0.55em', height: '0.55em', marginTop: '0.45em' },
+  '.cm-lint-marker-error': { backgroundColor: 'var(--shade-negative-high)' },
+  '.cm-lint-marker-warning': { border: '2px solid var(--shade-negative-high)' },
+  '.cm-lint-marker-info': { border: '1px solid var(--accent)', borderRadius: '50%' },
   '.cm-placeholder': { color: 'var(--ink-faint)' },
   '.cm-tooltip': { backgroundColor: 'var(--paper)', color: 'var(--ink)', border: '1px solid var(--rule-strong)' },
   '.cm-diagnostic': { fontFamily: 'var(--sans)', whiteSpace: 'pre-wrap', maxWidth: '32rem' },
@@ -116,7 +126,9 @@ export function Editor(props: EditorProps) {
     });
     view.current = editor;
     latest.current.onReady({
-      change: (changes) => { editor.dispatch({ changes: [...changes] }); },
+      change: (replacement) => {
+        editor.dispatch({ changes: replacement, annotations: isolateHistory.of('full') });
+      },
       undo: () => { undo(editor); },
       redo: () => { redo(editor); },
       show: (from, to) => {

@@ -76,7 +76,7 @@ const ADJUSTMENTS: readonly { key: Adjustment; label: string }[] = [
 ];
 
 function Disagreeing(props: { disagreements: Disagreements; onAdjust: (choice: Adjustment) => void }) {
-  const { total, pairs, roundingSized, chosen } = props.disagreements;
+  const { total, pairs, roundingSized } = props.disagreements;
   return (
     <fieldset class="question">
       <legend>
@@ -110,7 +110,7 @@ function Disagreeing(props: { disagreements: Disagreements; onAdjust: (choice: A
       {pairs.length < total && <p class="soft">The first {pairs.length} are listed.</p>}
       <div class="row">
         {ADJUSTMENTS.map(({ key, label }) => (
-          <button key={key} type="button" aria-pressed={chosen === key} onClick={() => { props.onAdjust(key); }}>
+          <button key={key} type="button" onClick={() => { props.onAdjust(key); }}>
             {label}
           </button>
         ))}
@@ -140,13 +140,19 @@ function summaryOf(reading: TextReading): string {
   return parts.filter((part) => part !== '').join('; ');
 }
 
+const ADJUSTED_WORDS: Record<Adjustment, string> = {
+  lower: 'Where mirrored cells disagree, the lower triangle counts',
+  upper: 'Where mirrored cells disagree, the upper triangle counts',
+  mean: 'Where mirrored cells disagree, their mean counts',
+};
+
 /** Everything said about one text, under its editor. */
 export function Findings(props: {
   reading: TextReading;
   onShow: (from: number, to: number) => void;
   onRepair: (repair: Repair) => void;
   onAnswer: (key: string | undefined) => void;
-  onAdjust: (choice: Adjustment) => void;
+  onAdjust: (choice: Adjustment | undefined) => void;
 }) {
   const { reading } = props;
   return (
@@ -163,6 +169,14 @@ export function Findings(props: {
           </>
         )}
       </p>
+      {reading.adjusted && (
+        <p>
+          {ADJUSTED_WORDS[reading.adjusted]} (by choice).
+          <button type="button" class="quiet" onClick={() => { props.onAdjust(undefined); }}>
+            choose again
+          </button>
+        </p>
+      )}
       {reading.question && <Asked question={reading.question} onAnswer={props.onAnswer} />}
       <DiagnosticList reading={reading} onShow={props.onShow} onRepair={props.onRepair} />
       {reading.disagreements && <Disagreeing disagreements={reading.disagreements} onAdjust={props.onAdjust} />}

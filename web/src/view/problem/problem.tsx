@@ -76,7 +76,7 @@ export function Problem() {
         onText={changeMatrix}
         onPaste={pasteReplaces}
         onAnswer={(matrixLayout) => { choose({ matrixLayout }); }}
-        onAdjust={(matrixAdjustment: Adjustment) => { choose({ matrixAdjustment }); }}
+        onAdjust={(matrixAdjustment?: Adjustment) => { choose({ matrixAdjustment }); }}
       />
       {metric === undefined ? (
         <p class="screen-only">
@@ -107,7 +107,7 @@ export function Problem() {
             onText={changeMetric}
             onPaste={neverReplaces}
             onAnswer={(metricLayout) => { choose({ metricLayout }); }}
-            onAdjust={(metricAdjustment: Adjustment) => { choose({ metricAdjustment }); }}
+            onAdjust={(metricAdjustment?: Adjustment) => { choose({ metricAdjustment }); }}
           />
         </div>
       )}

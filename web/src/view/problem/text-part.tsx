@@ -2,7 +2,7 @@
 import { signal, type ReadonlySignal } from '@preact/signals';
 import { useMemo, useRef } from 'preact/hooks';
 
-import type { Adjustment, Repair, TextReading, Which } from '../../shared/generated/eigenledger';
+import type { Adjustment, GridEdit, Repair, TextChange, TextReading, Which } from '../../shared/generated/eigenledger';
 import { reportTrouble, sheet } from '../../shared/store';
 import { withWorkbench } from '../../shared/worker';
 import { MatrixMap } from '../parts/matrix-map';
@@ -22,7 +22,7 @@ interface TextPartProps {
   readonly onText: (text: string) => void;
   readonly onPaste: (text: string) => boolean;
   readonly onAnswer: (key: string | undefined) => void;
-  readonly onAdjust: (choice: Adjustment) => void;
+  readonly onAdjust: (choice: Adjustment | undefined) => void;
 }
 
 type Face = 'text' | 'grid';
@@ -32,15 +32,15 @@ export function TextPart(props: TextPartProps) {
   const face = useMemo(() => signal<Face>('text'), []);
   const editor = useRef<EditorHandle | null>(null);
 
-  const repair = ({ key }: Repair) => {
-    withWorkbench((bench) => bench.apply_repair(sheet.value.value, which, key))
-      .then(({ edits }) => { editor.current?.change(edits); })
-      .catch(reportTrouble);
+  const change = ({ from, to, insert, layout }: TextChange) => {
+    editor.current?.change({ from, to, insert });
+    if (layout !== undefined && reading?.answered === true) props.onAnswer(layout);
   };
-  const block = (row: number, col: number, cells: string[][]) => {
-    withWorkbench((bench) => bench.set_cells(sheet.value.value, which, { row, col, cells }))
-      .then(({ edits }) => { editor.current?.change(edits); })
-      .catch(reportTrouble);
+  const repair = ({ key }: Repair) => {
+    withWorkbench((bench) => bench.apply_repair(sheet.value.value, which, key)).then(change, reportTrouble);
+  };
+  const edit = (made: GridEdit) => {
+    withWorkbench((bench) => bench.edit_grid(sheet.value.value, which, made)).then(change, reportTrouble);
   };
   const show = (from: number, to: number) => {
     face.value = 'text';
@@ -79,7 +79,7 @@ export function TextPart(props: TextPartProps) {
           <Grid
             reading={reading}
             label={`${label}, cell by cell`}
-            onBlock={block}
+            onEdit={edit}
             onUndo={() => { editor.current?.undo(); }}
             onRedo={() => { editor.current?.redo(); }}
           />

@@ -50,14 +50,13 @@ export function Tools() {
       <label class="examples">
         <span class="unseen">Open an example</span>
         <select
-          value=""
           onChange={(event) => {
             const key = event.currentTarget.value;
             event.currentTarget.value = '';
-            openExample(key).catch(reportTrouble);
+            if (key !== '') openExample(key).catch(reportTrouble);
           }}
         >
-          <option value="" disabled>
+          <option value="" selected>
             Examples
           </option>
           {examples.map(({ key, title }) => (
