@@ -6,7 +6,7 @@ use super::reading::{
     Answer, Cell, Diagnostic, DisagreeingPair, Question, Repair, Severity, TextReading,
     ToleranceCell,
 };
-use crate::entry::{self, CellValue, Entry, Origin, Settings};
+use crate::entry::{self, CellValue, Entry, Kind, Origin, Settings};
 use crate::matrix::Dense;
 use crate::num::ExactReal;
 use crate::problem::Disagreement;
@@ -22,7 +22,13 @@ pub(super) fn text_reading(text: &str, entry: &Entry, settings: &Settings) -> Te
         rows: entry.rows as u32,
         cols: entry.cols as u32,
         complex: is_complex(entry),
-        diagnostics: entry.diagnostics.iter().map(diagnostic).collect(),
+        diagnostics: entry
+            .diagnostics
+            .iter()
+            // The question itself is asked in its own place.
+            .filter(|found| found.kind != Kind::Ambiguous)
+            .map(diagnostic)
+            .collect(),
         question: entry
             .question
             .as_ref()

@@ -129,8 +129,9 @@ impl<'a> Text<'a> {
     fn refuse(&mut self, error: &ProblemError) {
         if let ProblemError::NotHermitian(asymmetry) = error {
             self.told.disagreements = Some(disagreements(asymmetry));
+        } else {
+            self.say(error.to_string(), Severity::Error);
         }
-        self.say(error.to_string(), Severity::Error);
     }
 
     fn say(&mut self, message: String, severity: Severity) {

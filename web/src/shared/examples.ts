@@ -1,5 +1,6 @@
 /** The example problems that ship with the page, in the order of their files. */
 import { notice, replaceDocument, sheet } from './store';
+import type { Opened } from './generated/eigenledger';
 import { withWorkbench } from './worker';
 
 const files = import.meta.glob<string>('../../../www-examples/*.json', {
@@ -31,7 +32,7 @@ export function isUntouchedExample(): boolean {
 }
 
 async function open(example: Example): Promise<void> {
-  const opened = await withWorkbench((bench) => bench.open_file(new TextEncoder().encode(example.json), `${example.key}.json`));
+  const opened = await withWorkbench(async (bench): Promise<Opened> => bench.open_file(new TextEncoder().encode(example.json), `${example.key}.json`));
   if (opened.outcome === 'document') replaceDocument(opened.document);
   else if (opened.outcome === 'refused') notice.value = { tone: 'trouble', text: opened.reason };
 }

@@ -1,5 +1,6 @@
 /** Files in and out. What a file holds is decided by Rust from its bytes. */
 import { changeDocument, notice, replaceDocument, reportTrouble } from './store';
+import type { Opened } from './generated/eigenledger';
 import { withWorkbench } from './worker';
 
 /** Larger files are refused before they are read into memory. */
@@ -16,7 +17,7 @@ export async function openFile(file: File): Promise<void> {
   }
   try {
     const bytes = new Uint8Array(await file.arrayBuffer());
-    const opened = await withWorkbench((bench) => bench.open_file(bytes, file.name));
+    const opened = await withWorkbench(async (bench): Promise<Opened> => bench.open_file(bytes, file.name));
     switch (opened.outcome) {
       case 'document':
         replaceDocument(opened.document);

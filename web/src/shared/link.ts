@@ -1,5 +1,6 @@
 /** The problem in the address: a fragment that Rust writes, checks and reads. */
 import { notice, replaceDocument, reportTrouble, sheet } from './store';
+import type { Opened } from './generated/eigenledger';
 import { withWorkbench } from './worker';
 
 /** The address of this page with the current problem in its fragment. */
@@ -20,7 +21,7 @@ export async function openLink(): Promise<boolean> {
   const fragment = location.hash.slice(1);
   if (fragment === '') return false;
   try {
-    const opened = await withWorkbench((bench) => bench.link_decode(fragment));
+    const opened = await withWorkbench(async (bench): Promise<Opened> => bench.link_decode(fragment));
     if (opened.outcome === 'document') {
       replaceDocument(opened.document);
       return true;
