@@ -23,11 +23,13 @@
 
 pub mod claim;
 pub mod control;
+pub mod document;
 pub mod entry;
 pub mod exact;
 pub mod fingerprint;
 pub mod iterate;
 pub mod ledger;
+pub mod link;
 pub mod matrix;
 pub mod num;
 pub mod pairs;

@@ -128,12 +128,7 @@ fn settle(
             return Err(ProblemError::NotHermitian(found));
         };
         mend(&mut cells, mirror);
-        adjustments.push(Adjustment {
-            part,
-            mirror,
-            count: found.count,
-            largest: found.largest,
-        });
+        adjustments.push(Adjustment { mirror, found });
     }
     Ok(planes(cells))
 }

@@ -100,14 +100,10 @@ impl std::fmt::Display for Asymmetry {
 /// What was done to make a matrix Hermitian: an act of the ledger.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Adjustment {
-    /// Which matrix.
-    pub part: Part,
     /// What was taken.
     pub mirror: Mirror,
-    /// Pairs and diagonal cells that disagreed.
-    pub count: usize,
-    /// The largest difference there was.
-    pub largest: f64,
+    /// What disagreed before.
+    pub found: Asymmetry,
 }
 
 impl std::fmt::Display for Adjustment {
@@ -117,12 +113,16 @@ impl std::fmt::Display for Adjustment {
             Mirror::Upper => "the upper triangle was taken",
             Mirror::Mean => "the mean of both was taken",
         };
-        let name = self.part.name();
-        let pairs = if self.count == 1 { "pair" } else { "pairs" };
+        let name = self.found.part.name();
+        let pairs = if self.found.count == 1 {
+            "pair"
+        } else {
+            "pairs"
+        };
         write!(
             f,
             "{} {pairs} of the {name} disagreed, by {:.3e} at most; {taken}.",
-            self.count, self.largest
+            self.found.count, self.found.largest
         )
     }
 }

@@ -94,7 +94,7 @@ fn repairs_are_exact_and_recorded() {
         assert_eq!(a.re(0, 1).equals(&wanted), Some(true), "{mirror:?}");
         assert!(a.im(1, 1).is_zero());
         assert_eq!(assembly.adjustments.len(), 1);
-        assert_eq!(assembly.adjustments[0].count, 2);
+        assert_eq!(assembly.adjustments[0].found.count, 2);
     }
     let choices = Choices {
         matrix: Some(Mirror::Mean),
