@@ -24,6 +24,8 @@ export async function openLink(): Promise<boolean> {
     const opened = await withWorkbench(async (bench): Promise<Opened> => bench.link_decode(fragment));
     if (opened.outcome === 'document') {
       replaceDocument(opened.document);
+      // A reload is to bring back what was made of it since, not the link again.
+      history.replaceState(null, '', location.href.split('#')[0]);
       return true;
     }
     if (opened.outcome === 'refused') notice.value = { tone: 'trouble', text: opened.reason };

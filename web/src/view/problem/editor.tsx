@@ -7,6 +7,7 @@ import { effect, type ReadonlySignal } from '@preact/signals';
 import { useEffect, useRef } from 'preact/hooks';
 
 import type { Diagnostic, Repair } from '../../shared/generated/eigenledger';
+import { expectedIn } from './findings';
 
 /** One replacement of a stretch of the text, offsets in UTF-16 code units. */
 export interface Replacement {
@@ -73,12 +74,12 @@ function marked(
 ): Marked[] {
   return diagnostics
     .filter(({ from }) => from <= length)
-    .map(({ from, to, severity, message, expected, repairs }) => ({
-      from,
-      to: Math.min(Math.max(to, from), length),
-      severity: severity === 'note' ? 'info' : severity,
-      message: expected === '' ? message : `${message} Expected: ${expected}.`,
-      actions: repairs.map((repair) => ({ name: repair.label, apply: () => { onRepair(repair); } })),
+    .map((found) => ({
+      from: found.from,
+      to: Math.min(Math.max(found.to, found.from), length),
+      severity: found.severity === 'note' ? 'info' : found.severity,
+      message: `${found.message} ${expectedIn(found)}`.trim(),
+      actions: found.repairs.map((repair) => ({ name: repair.label, apply: () => { onRepair(repair); } })),
     }));
 }
 

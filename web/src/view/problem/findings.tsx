@@ -15,6 +15,12 @@ function placeOf({ row, col }: Diagnostic): string {
   return col === undefined ? `row ${String(row)}` : `row ${String(row)}, column ${String(col)}`;
 }
 
+/** What was expected comes as a sentence or as the end of one. */
+export function expectedIn({ expected }: Diagnostic): string {
+  if (expected === '' || expected.endsWith('.')) return expected;
+  return `Expected: ${expected}.`;
+}
+
 const SEVERITY_WORDS = { error: 'to mend', warning: 'look here', note: 'noted' } as const;
 
 function DiagnosticList(props: {
@@ -35,8 +41,7 @@ function DiagnosticList(props: {
           </button>
           <span class="weight">{SEVERITY_WORDS[diagnostic.severity]}</span>
           <span class="sentence">
-            {diagnostic.message}
-            {diagnostic.expected !== '' && <span class="soft"> Expected: {diagnostic.expected}.</span>}
+            {diagnostic.message} <span class="soft">{expectedIn(diagnostic)}</span>
           </span>
           <span class="repairs">
             {diagnostic.repairs.map((repair) => (
