@@ -3,6 +3,7 @@
 pub use crate::document::{Adjustment, Choices, Parameter, ProblemDocument};
 
 use super::reading::Which;
+use crate::problem::{Part, ProblemError};
 
 impl ProblemDocument {
     /// The text of one of the matrices; empty when there is none.
@@ -19,5 +20,16 @@ impl ProblemDocument {
             Which::Matrix => self.choices.matrix_layout.as_deref(),
             Which::Metric => self.choices.metric_layout.as_deref(),
         }
+    }
+}
+
+/// The text that an error is about.
+pub(super) fn part_of(error: &ProblemError) -> Part {
+    match error {
+        ProblemError::Empty(part)
+        | ProblemError::NotSquare { part, .. }
+        | ProblemError::TooLarge { part, .. } => *part,
+        ProblemError::NotHermitian(asymmetry) => asymmetry.part,
+        ProblemError::OrderDiffers { .. } | ProblemError::MetricNotPositive(_) => Part::Metric,
     }
 }

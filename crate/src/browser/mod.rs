@@ -90,4 +90,28 @@ impl Workbench {
     pub fn open_file(&self, bytes: &[u8], name: &str) -> Result<Ts<Opened>, JsError> {
         Ok(Ts::from_rust(&open::file(bytes, name))?)
     }
+
+    /// The fragment of a link that carries the document, without the #.
+    ///
+    /// # Errors
+    /// If the document is not of the expected form.
+    pub fn link_encode(&self, document: Ts<ProblemDocument>) -> Result<String, JsError> {
+        Ok(crate::link::encode(&document.to_rust()?))
+    }
+
+    /// The document in a link's fragment, whole or not at all.
+    ///
+    /// # Errors
+    /// Only if the answer cannot be handed over.
+    pub fn link_decode(&self, fragment: &str) -> Result<Ts<Opened>, JsError> {
+        Ok(Ts::from_rust(&open::link(fragment))?)
+    }
+
+    /// The document as the text of a file.
+    ///
+    /// # Errors
+    /// If the document is not of the expected form.
+    pub fn document_write(&self, document: Ts<ProblemDocument>) -> Result<String, JsError> {
+        Ok(crate::document::write(&document.to_rust()?))
+    }
 }
