@@ -13,9 +13,17 @@ use super::evidence::Evidence;
 use super::interval::{one, zero, Complex, Precision, Real};
 use crate::exact::{ExactEigenvalue, ExactSpectrum, Polynomial};
 
-/// A basis of the eigenspace of the eigenvalue at `place` of the evidence;
-/// `None` when there is no exact spectrum or the precision does not suffice.
-pub(super) fn eigenspace(evidence: &Evidence<'_>, place: usize) -> Option<Vec<Vec<Complex>>> {
+/// A space that stated vectors are held against.
+pub(super) struct Space {
+    /// Vectors in intervals that span it.
+    pub(super) basis: Vec<Vec<Complex>>,
+    /// Whether it is the eigenspace; otherwise it only holds it.
+    pub(super) is_eigenspace: bool,
+}
+
+/// The eigenspace of the eigenvalue at `place` of the evidence; `None` when
+/// there is no exact spectrum or the precision does not suffice.
+pub(super) fn eigenspace(evidence: &Evidence<'_>, place: usize) -> Option<Space> {
     let spectrum = evidence.exact.as_ref()?;
     let eigenvalue = spectrum.eigenvalues.get(place)?;
     let precision = evidence.precision();
@@ -28,7 +36,10 @@ pub(super) fn eigenspace(evidence: &Evidence<'_>, place: usize) -> Option<Vec<Ve
             space.push(of_block(spectrum, rows, eigenvalue, precision)?);
         }
     }
-    (space.len() == eigenvalue.multiplicity).then_some(space)
+    (space.len() == eigenvalue.multiplicity).then_some(Space {
+        basis: space,
+        is_eigenspace: true,
+    })
 }
 
 /// Whether the eigenvalue is a root of a block's polynomial.

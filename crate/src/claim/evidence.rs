@@ -3,11 +3,15 @@
 
 use dashu_ratio::RBig;
 
+use super::eigenvectors::{eigenspace, Space};
 use super::interval::{Complex, Precision};
+use super::proven::Proven;
 use crate::control::Control;
 use crate::exact::{spectrum, ExactError, ExactSpectrum, Limits};
 use crate::matrix::ExactMatrix;
+use crate::pairs::Approximation;
 use crate::problem::Problem;
+use crate::prove::Proof;
 
 /// An interval proven to hold exactly `count` eigenvalues, with multiplicity.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -28,6 +32,7 @@ pub type Deepen<'a> = dyn FnMut() -> Option<Vec<EnclosedValue>> + 'a;
 /// Evidence about the eigenvalues of one problem.
 pub struct Evidence<'a> {
     pub(super) exact: Option<ExactSpectrum>,
+    proven: Option<Proven<'a>>,
     values: Vec<EnclosedValue>,
     deepen: Option<Box<Deepen<'a>>>,
     /// Bits of width the exact intervals are refined to, and working precision
@@ -40,6 +45,16 @@ const CAP_BITS: usize = 4_096;
 const FIRST_BITS: usize = 128;
 
 impl<'a> Evidence<'a> {
+    fn empty() -> Self {
+        Self {
+            exact: None,
+            proven: None,
+            values: Vec::new(),
+            deepen: None,
+            bits: FIRST_BITS,
+        }
+    }
+
     /// Evidence from the exact road.
     ///
     /// # Errors
@@ -56,22 +71,42 @@ impl<'a> Evidence<'a> {
     pub fn from_exact(spectrum: ExactSpectrum) -> Self {
         let mut evidence = Self {
             exact: Some(spectrum),
-            values: Vec::new(),
-            deepen: None,
-            bits: FIRST_BITS,
+            ..Self::empty()
         };
         evidence.refresh();
         evidence
     }
 
-    /// Evidence from proven enclosures, ascending and complete; `deepen`
-    /// returns narrower ones while it can.
+    /// Evidence from a proof, taken to further levels as claims need it. The
+    /// proof and the approximation must be those of `problem`.
+    pub fn proven(problem: &'a Problem, approximation: &'a Approximation, proof: Proof) -> Self {
+        let mut evidence = Self {
+            proven: Some(Proven::new(problem, approximation, proof)),
+            ..Self::empty()
+        };
+        evidence.refresh();
+        evidence
+    }
+
+    /// The exact road where `limits` allow it, else the proof.
+    pub fn best(
+        problem: &'a Problem,
+        approximation: &'a Approximation,
+        proof: Proof,
+        limits: &Limits,
+        control: &mut dyn Control,
+    ) -> Self {
+        Self::exact(problem, limits, control)
+            .unwrap_or_else(|_| Self::proven(problem, approximation, proof))
+    }
+
+    /// Evidence from proven enclosures of any source, ascending and complete;
+    /// `deepen` returns narrower ones while it can.
     pub fn enclosed(values: Vec<EnclosedValue>, deepen: Option<Box<Deepen<'a>>>) -> Self {
         Self {
-            exact: None,
             values,
             deepen,
-            bits: FIRST_BITS,
+            ..Self::empty()
         }
     }
 
@@ -100,6 +135,14 @@ impl<'a> Evidence<'a> {
             self.refresh();
             return true;
         }
+        if let Some(proven) = &mut self.proven {
+            if !proven.narrow() {
+                return false;
+            }
+            self.bits *= 2;
+            self.refresh();
+            return true;
+        }
         let Some(values) = self.deepen.as_mut().and_then(|deepen| deepen()) else {
             return false;
         };
@@ -108,7 +151,18 @@ impl<'a> Evidence<'a> {
         true
     }
 
+    /// The space that goes with the value at `place`, where it is known.
+    pub(super) fn space(&self, place: usize) -> Option<Space> {
+        match &self.proven {
+            Some(proven) => proven.space(self.values.get(place)?.first, self.precision()),
+            None => eigenspace(self, place),
+        }
+    }
+
     fn refresh(&mut self) {
+        if let Some(proven) = &self.proven {
+            self.values = proven.values();
+        }
         let Some(spectrum) = &mut self.exact else {
             return;
         };

@@ -28,12 +28,15 @@ mod interval;
 mod invariants;
 mod matching;
 mod misprint;
+mod output;
 mod polynomials;
 mod print;
+mod proven;
 mod read;
 mod reduction;
 mod reflectors;
 mod scalars;
+pub mod sequence;
 mod space;
 mod standard;
 pub mod statement;
@@ -45,10 +48,10 @@ pub mod verdict;
 
 pub use evidence::{EnclosedValue, Evidence};
 pub use read::{read, split};
+pub use sequence::{judge_all, Judgement, Line};
 pub use statement::{Claim, ClaimError, Kind};
 pub use verdict::{Finding, FindingKind, Freedom, Item, Verdict, Word};
 
-use crate::control::{Control, Flow, Stage};
 use crate::problem::Problem;
 
 /// Judges one claim about `problem`.
@@ -88,44 +91,11 @@ pub fn judge(claim: &Claim, problem: &Problem, evidence: &mut Evidence<'_>) -> V
         Kind::State { step, matrix } => states::judge(*step, matrix, problem),
         Kind::Cholesky(factor) => factors::judge(factor, problem),
         Kind::Polynomial(coefficients) => polynomials::judge(coefficients, evidence),
+        Kind::Output { values, columns } => {
+            output::judge(values, columns.as_ref(), problem, evidence)
+        }
         Kind::Scalar(which, figure) => scalars::judge(*which, figure, problem, evidence),
     }
-}
-
-/// The verdicts on a worked calculation, line by line.
-#[derive(Clone, Debug)]
-pub struct Judgement {
-    /// One for each claim, in order; a claim that cannot be read has its error.
-    pub lines: Vec<Result<Verdict, ClaimError>>,
-    /// The first line that is refuted, from 0.
-    pub first_wrong: Option<usize>,
-}
-
-/// Judges claims in order, as they are typed, one text each. Stops when
-/// cancelled, with the lines judged so far.
-pub fn judge_all(
-    texts: &[String],
-    problem: &Problem,
-    evidence: &mut Evidence<'_>,
-    control: &mut dyn Control,
-) -> Judgement {
-    let mut judgement = Judgement {
-        lines: Vec::with_capacity(texts.len()),
-        first_wrong: None,
-    };
-    for (place, text) in texts.iter().enumerate() {
-        let done = place as f64 / texts.len() as f64;
-        if control.progress(Stage::Claim, done) == Flow::Cancel {
-            break;
-        }
-        let line = read(text).map(|claim| judge(&claim, problem, evidence));
-        let refuted = matches!(&line, Ok(verdict) if verdict.word == Word::Refuted);
-        if refuted && judgement.first_wrong.is_none() {
-            judgement.first_wrong = Some(place);
-        }
-        judgement.lines.push(line);
-    }
-    judgement
 }
 
 #[cfg(test)]

@@ -95,7 +95,8 @@ pub fn split(text: &str) -> Vec<&str> {
     claims
 }
 
-const KINDS: [&str; 21] = [
+const KINDS: [&str; 22] = [
+    "output",
     "eigenvalue",
     "eigenvalues",
     "some",
@@ -223,6 +224,7 @@ impl Head<'_> {
             }
             ["cholesky"] => Ok(Kind::Cholesky(self.square(table(&rows, digits, 0))?)),
             ["polynomial"] => Ok(Kind::Polynomial(flat(&rows, digits))),
+            ["output"] => self.output(&rows),
             ["determinant"] => scalar(Scalar::Determinant),
             ["trace"] => scalar(Scalar::Trace),
             ["positive"] => scalar(Scalar::Positive),
@@ -319,6 +321,26 @@ impl Head<'_> {
             columns,
             values: Some(values),
             length: Length::Unit,
+        })
+    }
+
+    /// Values alone, or a row of values and the vectors as columns; figures of a
+    /// machine are meant exactly.
+    fn output(&self, rows: &[body::Row]) -> Result<Kind, ClaimError> {
+        let exact = Digits::Exact;
+        let order = rows[0].cells.len();
+        if rows.len() == order + 1 && order > 1 {
+            return Ok(Kind::Output {
+                values: flat(&rows[..1], &exact),
+                columns: Some(self.square(table(rows, &exact, 1))?),
+            });
+        }
+        if rows.len() > 1 && order > 1 {
+            return Err(self.shape("a row of values, then the vectors as columns"));
+        }
+        Ok(Kind::Output {
+            values: flat(rows, &exact),
+            columns: None,
         })
     }
 

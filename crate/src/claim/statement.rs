@@ -58,6 +58,13 @@ pub enum Kind {
     Polynomial(Vec<Figure>),
     /// One number.
     Scalar(Scalar, Figure),
+    /// An outside solver's output, taken as it stands.
+    Output {
+        /// Values, in the order of the columns.
+        values: Vec<Figure>,
+        /// Vectors as columns, where stated.
+        columns: Option<Table>,
+    },
 }
 
 /// Stated eigenvalues.
@@ -204,7 +211,7 @@ impl fmt::Display for ClaimError {
                 f,
                 "“{head}” is nothing that can be claimed; begin with eigenvalue, eigenvalues, vector, \
                  vectors, decomposition, tridiagonal, reflector, matrix, cholesky, polynomial, \
-                 determinant, trace, positive, negative, zero, condition, radius or frequency, \
+                 determinant, trace, positive, negative, zero, condition, radius, frequency or output, \
                  then a colon"
             ),
             Self::UnknownOption { option } => write!(

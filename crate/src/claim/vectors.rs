@@ -2,7 +2,6 @@
 
 use dashu_ratio::RBig;
 
-use super::eigenvectors::eigenspace;
 use super::evidence::{entries, Evidence};
 use super::exactly::{eigenvalue_of, Exactness};
 use super::figure::Figure;
@@ -179,11 +178,12 @@ fn attempt(
     let mut nearest: Option<(RBig, usize)> = None;
     let mut unclear = false;
     for candidate in candidates(value, place, evidence) {
-        let Some(space) = eigenspace(evidence, candidate) else {
+        let Some(space) = evidence.space(candidate) else {
             unclear = true;
             continue;
         };
-        match meets(&space, vector, complex, evidence.precision()) {
+        match meets(&space.basis, vector, complex, evidence.precision()) {
+            Meeting::Yes if !space.is_eigenspace => unclear = true,
             Meeting::Yes => {
                 let mut verdict = Verdict::new(
                     Word::Confirmed,
@@ -194,7 +194,7 @@ fn attempt(
                     ),
                 )
                 .resting_on("eigenvalue", evidence.told(candidate));
-                if space.len() > 1 {
+                if space.basis.len() > 1 {
                     verdict = verdict.granting(Freedom::Basis);
                 }
                 show(&mut verdict, vector, candidate, evidence);
@@ -281,10 +281,12 @@ fn rayleigh(vector: &[Figure], problem: &Problem, p: Precision) -> Option<RBig> 
 
 /// Adds the components beside those of the nearest true multiple.
 fn show(verdict: &mut Verdict, vector: &[Figure], place: usize, evidence: &Evidence<'_>) {
-    let Some(space) = eigenspace(evidence, place) else {
+    let Some(space) = evidence.space(place) else {
         return;
     };
-    let [only] = space.as_slice() else { return };
+    let [only] = space.basis.as_slice() else {
+        return;
+    };
     let Some(truth) = nearest_multiple(only, vector, evidence.precision()) else {
         return;
     };

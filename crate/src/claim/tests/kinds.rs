@@ -1,7 +1,5 @@
 //! Each kind of claim, right and wrong, by hand.
 
-use dashu_ratio::RBig;
-
 use super::*;
 use crate::claim::{ClaimError, Freedom};
 
@@ -403,4 +401,61 @@ fn figures_in_every_form() {
     }
     expect(&real(&[&[-2]]), "eigenvalue: −2", Word::Confirmed);
     expect(&problem, "tridiagonal: [[2, 1], [1, 3]]", Word::Confirmed);
+}
+
+/// Doubles of a solver for [[2, 1], [1, 3]], and the same with one digit
+/// altered.
+#[test]
+fn outside_output_is_measured() {
+    let problem = golden();
+    let right = "output: 1.381966011250105 3.618033988749895; \
+                 -0.8506508083520399 0.5257311121191337; 0.5257311121191337 0.8506508083520399";
+    let verdict = expect(&problem, right, Word::Confirmed);
+    for item in &verdict.items {
+        let digits = item
+            .off_by
+            .as_deref()
+            .and_then(|text| text.split(' ').next());
+        let digits: i32 = digits
+            .and_then(|d| d.parse().ok())
+            .expect("a count of digits");
+        assert!((15..=17).contains(&digits), "{item:#?}");
+    }
+    let altered = right.replace("3.618033988749895", "3.618033988759895");
+    let verdict = expect(&problem, &altered, Word::Refuted);
+    assert_eq!(
+        verdict.items[1].off_by.as_deref(),
+        Some("11 digits right"),
+        "{verdict:#?}"
+    );
+    let skew = right.replace("0.8506508083520399;", "0.8506508083530399;");
+    expect(
+        &problem,
+        &skew.replacen("-0.8506508083520399", "-0.8506508083530399", 1),
+        Word::Refuted,
+    );
+    expect(
+        &problem,
+        "output: 3.618033988749895 1.381966011250105",
+        Word::Confirmed,
+    );
+    expect(
+        &problem,
+        "output: 3.618033988749895\n1.381966011250105",
+        Word::Confirmed,
+    );
+    expect(
+        &problem,
+        "output: 3.618033988749895 1.381966011150105",
+        Word::Refuted,
+    );
+    let storeys = pair(&[&[3, -1], &[-1, 1]], &[&[2, 0], &[0, 1]]);
+    let right = "output: 0.5 2; 0.408248290463863 -0.5773502691896257; \
+                 0.816496580927726 0.5773502691896257";
+    expect(&storeys, right, Word::Confirmed);
+    expect(
+        &storeys,
+        &right.replace("0.5 2;", "0.5 2.0000001;"),
+        Word::Refuted,
+    );
 }

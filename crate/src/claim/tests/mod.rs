@@ -5,6 +5,8 @@ mod published;
 mod random;
 mod slips;
 
+use dashu_ratio::RBig;
+
 use crate::claim::{judge, read, Evidence, FindingKind, Verdict, Word};
 use crate::control::Unattended;
 use crate::exact::Limits;

@@ -298,22 +298,21 @@ fn a_worked_calculation_marks_its_first_wrong_line() {
                 matrix 2:\n4 -3 0 0\n-3 3.3333 -1.6667 0\n0 -1.6667 -1.3200 0.9607\n0 0 0.9607 1.9867\n\
                 eigenvalues: -2.1975, 1.0844, 2.2685, 6.8446\n\
                 trace: 8\n";
-    let texts: Vec<String> = split(text).into_iter().map(str::to_owned).collect();
-    assert_eq!(texts.len(), 5, "{texts:?}");
+    assert_eq!(split(text).len(), 5, "{:?}", split(text));
     let problem = textbook();
     let mut evidence = evidence(&problem);
-    let judgement = judge_all(&texts, &problem, &mut evidence, &mut Unattended);
+    let judgement = judge_all(&[text.to_owned()], &problem, &mut evidence, &mut Unattended);
     // 68/75 = 0.9067: two digits were exchanged in the third line.
     assert_eq!(judgement.first_wrong, Some(2), "{judgement:#?}");
-    let words: Vec<Word> = judgement
+    let words: Vec<Option<Word>> = judgement
         .lines
         .iter()
-        .map(|line| line.as_ref().expect("a claim").word)
+        .map(|line| line.verdict.as_ref().map(|v| v.word))
         .collect();
-    let right = Word::Confirmed;
-    assert_eq!(
-        words,
-        [right, right, Word::Refuted, right, right],
-        "{judgement:#?}"
-    );
+    let right = Some(Word::Confirmed);
+    let expected = [right, right, Some(Word::Refuted), right, right];
+    assert_eq!(words, expected, "{judgement:#?}");
+    let json = serde_json::to_string(&judgement).expect("JSON");
+    let back: crate::claim::Judgement = serde_json::from_str(&json).expect("a judgement");
+    assert_eq!(back, judgement);
 }
