@@ -3,7 +3,8 @@
 use super::diagnostic::{count, Finding, Findings, Kind};
 use super::raw::RawTable;
 use super::repair::{Action, Repair};
-use super::settings::Settings;
+use super::settings::{Settings, Wanted};
+use super::shape;
 use super::span::Bytes;
 use std::collections::BTreeMap;
 
@@ -14,31 +15,49 @@ pub(crate) fn describe(table: &RawTable, settings: &Settings, findings: &mut Fin
     if widths.iter().all(|&width| width == first) {
         not_square(table, settings, findings);
     } else {
-        ragged(table, &widths, findings);
+        ragged(table, &widths, settings, findings);
     }
 }
 
-fn ragged(table: &RawTable, widths: &[usize], findings: &mut Findings) {
+/// The repair for lists that were written as columns: what they give when
+/// turned is a matrix.
+fn transposition(widths: &[usize], settings: &Settings) -> Option<Repair> {
+    let widest = widths.iter().copied().max().unwrap_or(0);
+    let falling = widths.is_sorted_by(|a, b| a >= b);
+    if !falling || widest < 2 || widest > 3 {
+        return None;
+    }
+    let turned: Vec<usize> = (0..widest)
+        .map(|col| widths.iter().filter(|&&width| width > col).count())
+        .collect();
+    let fits = !shape::possible(&turned, Wanted::Square).is_empty();
+    fits.then(|| Repair::new("Write the columns as rows", Action::Transpose, *settings))
+}
+
+fn ragged(table: &RawTable, widths: &[usize], settings: &Settings, findings: &mut Findings) {
     let (wanted, reason) = wanted_width(widths);
+    let mut repair = transposition(widths, settings);
     for (row, &width) in widths.iter().enumerate() {
         let expected = wanted(row);
         if width == expected {
             continue;
         }
-        findings.push(
-            Finding::error(
-                Kind::Ragged,
-                format!(
-                    "Row {} has {}; {} expected, {reason}.",
-                    row + 1,
-                    count(width, "cell"),
-                    expected
-                ),
-            )
-            .at_row(row)
-            .span(row_bytes(table, row))
-            .expected(count(expected, "cell")),
-        );
+        let finding = Finding::error(
+            Kind::Ragged,
+            format!(
+                "Row {} has {}; {} expected, {reason}.",
+                row + 1,
+                count(width, "cell"),
+                expected
+            ),
+        )
+        .at_row(row)
+        .span(row_bytes(table, row))
+        .expected(count(expected, "cell"));
+        findings.push(match repair.take() {
+            Some(repair) => finding.repair(repair),
+            None => finding,
+        });
     }
 }
 

@@ -40,6 +40,7 @@ pub mod repair;
 pub mod settings;
 mod shape;
 pub mod span;
+mod triangle;
 mod value;
 mod write;
 
@@ -283,7 +284,6 @@ fn fill(
     entry.cols = cols;
     entry.row_labels.clone_from(&reading.stripped.rows);
     entry.col_labels.clone_from(&reading.stripped.cols);
-    entry.cells = Vec::with_capacity(rows * cols);
     let mut given = Vec::with_capacity(table.rows());
     let reader = cells::CellReader {
         text,
@@ -291,31 +291,35 @@ fn fill(
         parameters,
     };
     for row in 0..table.rows() {
-        let values: Vec<Cell> = table
-            .row(row)
-            .iter()
-            .enumerate()
-            .map(|(col, cell)| Cell {
-                value: reader.read(cell, row, col, findings),
-                span: offsets.span(cell.span),
-                origin: cell.origin(),
-            })
-            .collect();
-        given.push(values);
+        let read_cell = |(col, cell): (usize, &raw::RawCell)| Cell {
+            value: reader.read(cell, row, col, findings),
+            span: offsets.span(cell.span),
+            origin: cell.origin(),
+        };
+        given.push(
+            table
+                .row(row)
+                .iter()
+                .enumerate()
+                .map(read_cell)
+                .collect::<Vec<Cell>>(),
+        );
     }
-    for row in 0..rows {
-        for col in 0..cols {
-            entry.cells.push(cells::lay(
-                shape::source(reading.shape, &widths, row, col),
-                &given,
-            ));
+    if reading.shape == Shape::Full && widths.iter().all(|&width| width == cols) {
+        entry.cells = given.into_iter().flatten().collect();
+    } else {
+        entry.cells.reserve(rows * cols);
+        for row in 0..rows {
+            for col in 0..cols {
+                let source = shape::source(reading.shape, &widths, row, col);
+                entry.cells.push(cells::lay(source, &given));
+            }
         }
     }
+    triangle::check(entry, findings);
 }
 
 #[cfg(test)]
-mod cell_tests;
-#[cfg(test)]
-mod parameters_tests;
+mod layout_properties;
 #[cfg(test)]
 mod tests;

@@ -254,7 +254,7 @@ fn starts_inside(text: &str) -> bool {
 /// Whether a word ends with the imaginary unit, as a number does.
 pub(crate) fn is_imaginary(word: &str) -> bool {
     let word = word.trim_end_matches(clean::is_invisible);
-    let Some(rest) = word.strip_suffix(['i', 'j', 'ⅈ', 'I', 'J']) else {
+    let Some(rest) = word.strip_suffix(['i', 'j']) else {
         return false;
     };
     rest.ends_with(|c: char| c.is_numeric() || c == '.' || c == ')' || c == '*' || c == '·')

@@ -52,8 +52,64 @@ fn tokenise(
 }
 
 /// Weighs the readings the text allows.
+///
+/// Choices made for an earlier state of the text may not fit it any more; then
+/// first the shape and labels among them are let go, then all of them.
 pub(crate) fn choose(source: &str, options: &ReadOptions, findings: &mut Findings) -> Outcome {
-    let candidates = recognise::candidates(source, &options.settings);
+    let chosen = options.settings;
+    let mut relaxed = vec![
+        chosen,
+        Settings {
+            shape: None,
+            labels: None,
+            ..chosen
+        },
+        Settings::default(),
+    ];
+    relaxed.dedup();
+    let mut weighed = weigh(source, &relaxed[0], options, findings);
+    for settings in &relaxed[1..] {
+        if matches!(&weighed, Weighed::Misfit(..)) {
+            let mut quiet = Findings::new(0);
+            let again = weigh(source, settings, options, &mut quiet);
+            if matches!(&again, Weighed::Fits { .. }) {
+                weighed = again;
+            }
+        }
+    }
+    match weighed {
+        Weighed::Fits { fits, candidates } => take(source, fits, &candidates, options, findings),
+        Weighed::Misfit(settings, table) => Outcome {
+            reading: Some(misfit(source, settings, &table, options, findings)),
+            question: None,
+        },
+        Weighed::Nothing => Outcome {
+            reading: None,
+            question: None,
+        },
+    }
+}
+
+/// What the candidates come to.
+enum Weighed {
+    /// Readings that give what is wanted, among these candidates.
+    Fits {
+        fits: Vec<Reading>,
+        candidates: Vec<Settings>,
+    },
+    /// None does; the first candidate and its cells.
+    Misfit(Settings, RawTable),
+    /// There is nothing to show; a finding says why.
+    Nothing,
+}
+
+fn weigh(
+    source: &str,
+    chosen: &Settings,
+    options: &ReadOptions,
+    findings: &mut Findings,
+) -> Weighed {
+    let candidates = recognise::candidates(source, chosen);
     let mut fits: Vec<Reading> = Vec::new();
     let mut first: Option<(Settings, RawTable)> = None;
     for settings in &candidates {
@@ -61,10 +117,7 @@ pub(crate) fn choose(source: &str, options: &ReadOptions, findings: &mut Finding
             continue;
         };
         if too_large(&table, options, findings) {
-            return Outcome {
-                reading: None,
-                question: None,
-            };
+            return Weighed::Nothing;
         }
         let table = labels::without_blank_margins(table, source);
         if !table.is_empty() {
@@ -72,26 +125,29 @@ pub(crate) fn choose(source: &str, options: &ReadOptions, findings: &mut Finding
             first.get_or_insert((*settings, table));
         }
     }
-    if fits.is_empty() {
-        if let Some((settings, table)) = first {
-            return Outcome {
-                reading: misfit(source, settings, &table, options, findings),
-                question: None,
-            };
-        }
-        if !findings.has_errors() {
-            findings.push(
-                Finding::error(Kind::Empty, "There are no cells in the text.")
-                    .expected("rows of numbers"),
-            );
-        }
-        return Outcome {
-            reading: None,
-            question: None,
-        };
+    if !fits.is_empty() {
+        return Weighed::Fits { fits, candidates };
     }
+    if let Some((settings, table)) = first {
+        return Weighed::Misfit(settings, table);
+    }
+    if !findings.has_errors() {
+        let nothing = Finding::error(Kind::Empty, "There are no cells in the text.");
+        findings.push(nothing.expected("rows of numbers"));
+    }
+    Weighed::Nothing
+}
+
+/// Takes the one reading that fits, or asks.
+fn take(
+    source: &str,
+    mut fits: Vec<Reading>,
+    candidates: &[Settings],
+    options: &ReadOptions,
+    findings: &mut Findings,
+) -> Outcome {
     settle_runs(&mut fits, options.wanted);
-    if let ([fit], [_, _, ..]) = (fits.as_slice(), candidates.as_slice()) {
+    if let ([fit], [_, _, ..]) = (fits.as_slice(), candidates) {
         let others: Vec<&Settings> = candidates
             .iter()
             .filter(|other| !is_same(other, &fit.settings))
@@ -134,7 +190,8 @@ fn collect(
         };
         let mut found = false;
         for shape in shapes {
-            if !fits_exactly(shape, &stripped.table.widths(), options.wanted) {
+            let widths = stripped.table.widths();
+            if !fits_exactly(shape, &widths, options.wanted) || exceeds(shape, &widths, options) {
                 continue;
             }
             for &decimal in &decimals {
@@ -204,6 +261,13 @@ fn fits_exactly(shape: Shape, widths: &[usize], wanted: Wanted) -> bool {
     }
 }
 
+/// Whether the shape makes a matrix larger than is worked here; a list may be
+/// as long as a matrix has cells.
+fn exceeds(shape: Shape, widths: &[usize], options: &ReadOptions) -> bool {
+    let (rows, cols) = shape::size(shape, widths);
+    options.wanted != Wanted::List && rows.max(cols) > options.limits.order
+}
+
 /// Whether the reading makes its matrix from one run of cells.
 fn is_run(fit: &Reading) -> bool {
     matches!(
@@ -248,7 +312,7 @@ fn misfit(
     table: &RawTable,
     options: &ReadOptions,
     findings: &mut Findings,
-) -> Option<Reading> {
+) -> Reading {
     let labels = settings.labels.unwrap_or_else(|| {
         labels::possible(table, source, options.parameters)
             .first()
@@ -261,11 +325,11 @@ fn misfit(
         .unwrap_or_else(|| decimal::possible(&stripped.table, source)[0]);
     let settings = resolved(&settings, labels, decimal, Shape::Full);
     super::misfit::describe(&stripped.table, &settings, findings);
-    Some(Reading {
+    Reading {
         settings,
         stripped,
         shape: Shape::Full,
-    })
+    }
 }
 
 /// One run of cells is a matrix only where nothing better is: beside a reading

@@ -6,29 +6,44 @@ use super::{brackets, html, json, latex, markdown, matrix_market, plain};
 
 /// The readings a text allows, most natural first; one unless the content is
 /// ambiguous. Whether several of them matter is decided by what they give.
+///
+/// Questions arise only between plain layouts. A layout chosen for an earlier
+/// text is therefore kept only while the text is a plain one.
 pub(crate) fn candidates(source: &str, chosen: &Settings) -> Vec<Settings> {
-    let layouts = match chosen.layout {
-        Some(layout) => vec![Settings {
-            layout: Some(layout),
-            ..*chosen
-        }],
-        None => by_content(source)
-            .into_iter()
-            .map(|found| Settings {
-                layout: found.layout,
-                decimal: chosen.decimal.or(found.decimal),
-                signed_words: chosen.signed_words.or(found.signed_words),
-                ..*chosen
-            })
-            .collect(),
+    let found = by_content(source);
+    let plain = found
+        .iter()
+        .all(|settings| settings.layout.is_some_and(is_plain));
+    let found = match chosen.layout {
+        Some(layout) if plain && is_plain(layout) => vec![of(layout)],
+        _ => found,
     };
     let mut list: Vec<Settings> = Vec::new();
-    for settings in layouts {
+    for found in found {
+        let settings = Settings {
+            layout: found.layout,
+            decimal: chosen.decimal.or(found.decimal),
+            signed_words: chosen.signed_words.or(found.signed_words),
+            ..*chosen
+        };
         if !list.contains(&settings) {
             list.push(settings);
         }
     }
     list
+}
+
+fn is_plain(layout: Layout) -> bool {
+    matches!(
+        layout,
+        Layout::Spaces
+            | Layout::Tabs
+            | Layout::Commas
+            | Layout::CommasAndSpaces
+            | Layout::Semicolons
+            | Layout::RowsAtSemicolons
+            | Layout::CommasRowsAtSemicolons
+    )
 }
 
 fn by_content(source: &str) -> Vec<Settings> {

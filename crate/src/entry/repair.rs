@@ -1,9 +1,11 @@
 //! Repairs: what puts a text right in one action.
 
+use super::grid::{self, CellEdit, Mirror};
 use super::reading;
 use super::settings::{Layout, Limits, Settings};
 use super::value;
 use super::write;
+use super::{read, Input, ReadOptions, Span};
 use serde::{Deserialize, Serialize};
 
 /// One repair, ready to be applied to the text that it was offered for.
@@ -18,8 +20,7 @@ pub struct Repair {
     pub settings: Settings,
 }
 
-/// What a repair does. Rows and columns are counted from 0, in the text as
-/// it was read, labels included.
+/// What a repair does. Rows and columns are those of the matrix, from 0.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
 #[serde(rename_all = "kebab-case", tag = "do")]
 #[non_exhaustive]
@@ -53,6 +54,10 @@ pub enum Action {
     },
     /// Writes rows as columns.
     Transpose,
+    /// Writes the conjugates of the cells below the diagonal above it.
+    MirrorLower,
+    /// Writes the conjugates of the cells above the diagonal below it.
+    MirrorUpper,
 }
 
 impl Repair {
@@ -68,6 +73,7 @@ impl Repair {
 /// The text with the repair done. A repair offered for another text leaves the
 /// text as it is where it does not fit.
 pub fn apply(text: &str, repair: &Repair) -> String {
+    let labels = repair.settings.labels.unwrap_or_default();
     match &repair.action {
         Action::Replace {
             start,
@@ -97,13 +103,15 @@ pub fn apply(text: &str, repair: &Repair) -> String {
             }
         }),
         Action::DropRow { row } => rewrite(text, &repair.settings, |rows| {
-            if *row < rows.len() {
-                rows.remove(*row);
+            let row = row + usize::from(labels.first_row());
+            if row < rows.len() {
+                rows.remove(row);
             }
         }),
         Action::DropColumn { col } => rewrite(text, &repair.settings, |rows| {
-            for cells in rows.iter_mut().filter(|cells| *col < cells.len()) {
-                cells.remove(*col);
+            let col = col + usize::from(labels.first_col());
+            for cells in rows.iter_mut().filter(|cells| col < cells.len()) {
+                cells.remove(col);
             }
         }),
         Action::Transpose => rewrite(text, &repair.settings, |rows| {
@@ -116,7 +124,37 @@ pub fn apply(text: &str, repair: &Repair) -> String {
                 })
                 .collect();
         }),
+        Action::MirrorLower => mirror(text, &repair.settings, |row, col| row > col),
+        Action::MirrorUpper => mirror(text, &repair.settings, |row, col| row < col),
     }
+}
+
+/// Writes the conjugates of the cells for which `keep(row, col)` holds across
+/// the diagonal.
+fn mirror(text: &str, settings: &Settings, keep: impl Fn(usize, usize) -> bool) -> String {
+    let options = ReadOptions {
+        settings: *settings,
+        ..ReadOptions::default()
+    };
+    let entry = read(Input::Text(text), &options);
+    let written = |span: Span| {
+        text.get(span.start as usize..span.end as usize)
+            .unwrap_or("0")
+            .to_owned()
+    };
+    let edits: Vec<CellEdit> = (0..entry.rows)
+        .flat_map(|row| (0..entry.cols).map(move |col| (row, col)))
+        .filter(|&(row, col)| keep(row, col))
+        .filter_map(|(row, col)| {
+            let cell = entry.cell(row, col)?;
+            Some(CellEdit {
+                row,
+                col,
+                text: written(cell.span),
+            })
+        })
+        .collect();
+    grid::set_cells(text, &entry, &edits, Mirror::Conjugate, &options).text
 }
 
 /// Rewrites the cells for which `change` gives a new text, in place.

@@ -325,6 +325,10 @@ fn repairs_make_the_text_usable() {
         ("1;2\n2;\n", [["1", "2"], ["2", "0"]]),
         ("8 9\n1 2\n2 3", [["1", "2"], ["2", "3"]]),
         ("[[9, 1, 2], [9, 2, 3]]", [["1", "2"], ["2", "3"]]),
+        ("a,b\n8,9\n1,2\n2,3", [["1", "2"], ["2", "3"]]),
+        ("1 0\n2 3", [["1", "2"], ["2", "3"]]),
+        ("1; 1/4\n0; 3", [["1", "1/4"], ["1/4", "3"]]),
+        ("1,5\t2.5\n2.5\t3", [["3/2", "5/2"], ["5/2", "3"]]),
     ] {
         let entry = square(text);
         let repair = entry
@@ -368,4 +372,125 @@ fn a_million_rows_are_counted_and_refused() {
         entry.diagnostics[0].sentence,
         "The text has 1,000,000 rows and 3 cells in the widest; matrices up to order 1,000 are worked here."
     );
+}
+
+#[test]
+fn lists_written_as_columns_can_be_turned() {
+    let text = "1 4\n2 5\n3";
+    let entry = square(text);
+    let repair = entry.diagnostics[0].repairs.first().expect("a repair");
+    let entry = square(&repair::apply(text, repair));
+    assert_eq!(
+        cells(&entry),
+        [["1", "4", "0"], ["4", "2", "5"], ["0", "5", "3"]]
+    );
+}
+
+#[test]
+fn choices_that_no_longer_fit_are_let_go() {
+    let settings = Settings {
+        layout: Some(Layout::Spaces),
+        shape: Some(Shape::Diagonal),
+        ..Settings::default()
+    };
+    for text in ["1 2\n2 3", "[[1, 2], [2, 3]]"] {
+        let options = ReadOptions {
+            settings,
+            ..ReadOptions::default()
+        };
+        let entry = read(Input::Text(text), &options);
+        assert!(entry.is_usable(), "{text:?}: {:?}", entry.diagnostics);
+        assert_eq!(cells(&entry), [["1", "2"], ["2", "3"]], "{text:?}");
+    }
+}
+
+#[test]
+fn a_run_too_long_for_a_diagonal_is_no_matrix() {
+    let entry = square(&"1 ".repeat(5000));
+    assert!(!entry.is_usable());
+    assert_eq!((entry.rows, entry.cols), (1, 5000));
+}
+
+#[test]
+fn lists_run_over_rows_and_columns() {
+    let options = ReadOptions {
+        wanted: Wanted::List,
+        ..ReadOptions::default()
+    };
+    for text in [
+        "1 2 3",
+        "1\n2\n3",
+        "1 2\n3",
+        "[1, 2, 3]",
+        "1; 2; 3",
+        "1\t2\t3\n",
+    ] {
+        let entry = read(Input::Text(text), &options);
+        assert!(entry.is_usable(), "{text:?}: {:?}", entry.diagnostics);
+        assert_eq!(cells(&entry), [["1", "2", "3"]], "{text:?}");
+    }
+}
+
+#[test]
+fn every_other_layout_reads_to_the_end() {
+    let two: &[&[&str]] = &[&["1", "1/2"], &["1/2", "3"]];
+    for (text, layout) in [
+        (
+            r"\begin{pmatrix} 1 & \frac{1}{2} \\ \tfrac12 & 3 \end{pmatrix}",
+            Layout::Latex,
+        ),
+        (
+            "| | a | b |\n|---|---|---|\n| a | 1 | 1/2 |\n| b | 1/2 | 3 |",
+            Layout::Markdown,
+        ),
+        ("| 1 | 0.5 |\n|---|---|\n| 0.5 | 3 |", Layout::Markdown),
+        (
+            "<table><tr><th>a<th>b<tr><td>1<td>1/2<tr><td>1/2<td>3</table>",
+            Layout::Html,
+        ),
+        ("[1 1/2; 1/2 3]", Layout::Brackets),
+        (
+            "%%MatrixMarket matrix array real symmetric\n2 2\n1\n.5\n3\n",
+            Layout::MatrixMarket,
+        ),
+    ] {
+        assert_reads(text, layout, two);
+    }
+}
+
+#[test]
+fn files_are_read_and_their_text_kept() {
+    let doubles: Vec<u8> = [1.0f64, 0.5, 0.5, 3.0]
+        .iter()
+        .flat_map(|x| x.to_le_bytes())
+        .collect();
+    let header = b"{'descr': '<f8', 'fortran_order': False, 'shape': (2, 2), }\n";
+    let npy = [
+        b"\x93NUMPY\x01\x00",
+        &[header.len() as u8, 0][..],
+        header,
+        &doubles,
+    ]
+    .concat();
+    for bytes in [&npy[..], b"1 0.5\n0.5 3"] {
+        let entry = read(
+            Input::File {
+                bytes,
+                name: "a.npy",
+            },
+            &ReadOptions::default(),
+        );
+        assert!(entry.is_usable(), "{:?}", entry.diagnostics);
+        let text = entry.text.clone().expect("the text of the file");
+        assert_eq!(cells(&entry), [["1", "1/2"], ["1/2", "3"]]);
+        assert_eq!(cells(&square(&text)), cells(&entry), "{text:?}");
+    }
+    let entry = read(
+        Input::File {
+            bytes: b"\x00\x01",
+            name: "a.bin",
+        },
+        &ReadOptions::default(),
+    );
+    assert_eq!(entry.diagnostics[0].sentence, "a.bin is not a text file.");
 }
