@@ -191,9 +191,13 @@ pub(crate) fn continues(so_far: &str, next: &str) -> bool {
     ends_open(so_far) || starts_inside(next)
 }
 
-/// Whether a word is a signed imaginary number.
+/// Whether a word is a signed imaginary number without real part.
 pub(crate) fn is_signed_imaginary(word: &str) -> bool {
-    word.starts_with(SIGNS) && is_imaginary(word)
+    let Some(rest) = word.strip_prefix(SIGNS) else {
+        return false;
+    };
+    let another_sign = |(at, _): (usize, &str)| !rest[..at].ends_with(['e', 'E', '(', '^']);
+    is_imaginary(word) && !rest.match_indices(SIGNS).any(another_sign)
 }
 
 enum Word {

@@ -113,6 +113,10 @@ fn weigh(
     let mut fits: Vec<Reading> = Vec::new();
     let mut first: Option<(Settings, RawTable)> = None;
     for settings in &candidates {
+        // Signed words are joined only where apart they make no matrix.
+        if settings.signed_words == Some(SignedWords::Joined) && !fits.iter().all(is_run) {
+            continue;
+        }
         let Some(table) = tokenise(source, settings, &options.limits, findings) else {
             continue;
         };
@@ -147,12 +151,15 @@ fn take(
     findings: &mut Findings,
 ) -> Outcome {
     settle_runs(&mut fits, options.wanted);
-    if let ([fit], [_, _, ..]) = (fits.as_slice(), candidates) {
+    if let [fit] = fits.as_slice() {
         let others: Vec<&Settings> = candidates
             .iter()
             .filter(|other| !is_same(other, &fit.settings))
+            .filter(|other| other.signed_words != Some(SignedWords::Joined))
             .collect();
-        findings.push(only_fit(fit, &others));
+        if !others.is_empty() {
+            findings.push(only_fit(fit, &others));
+        }
     }
     let question = ask(&fits, source, options);
     let taken = question
@@ -319,7 +326,12 @@ fn misfit(
             .copied()
             .unwrap_or_default()
     });
-    let stripped = labelled(table, source, labels, options);
+    let mut labels = labels;
+    let mut stripped = labelled(table, source, labels, options);
+    if stripped.table.is_empty() {
+        labels = Labels::None;
+        stripped = labelled(table, source, labels, options);
+    }
     let decimal = settings
         .decimal
         .unwrap_or_else(|| decimal::possible(&stripped.table, source)[0]);
