@@ -715,6 +715,7 @@ fn a_metric_that_is_not_positive_is_refuted_or_undecided() {
 }
 
 #[test]
+#[cfg_attr(target_arch = "wasm32", ignore = "reads the source tree")]
 fn the_stage_imports_only_what_its_rule_allows() {
     let folder = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("src/prove");
     let allowed = [
