@@ -16,7 +16,7 @@ if (executablePath === undefined || address === undefined) {
 export const pageAddress = address;
 
 /** Slow machines are not wrong: a scenario waits this long for a result. */
-export const PATIENCE_MS = 60_000;
+export const PATIENCE_MS = 30_000;
 
 const QUIET = [
   '--no-sandbox',

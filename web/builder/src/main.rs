@@ -2,6 +2,7 @@
 //! and runs every check of the project.
 
 mod checks;
+mod compressed;
 mod console;
 mod debian;
 mod layout;

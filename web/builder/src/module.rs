@@ -41,9 +41,8 @@ fn compile(layout: &Layout, target: &WasmTarget) -> Result<PathBuf> {
         "--release",
     ]);
     console::run(&mut command)?;
-    Ok(layout
-        .target
-        .join("wasm")
+    Ok(target
+        .target_dir(layout)
         .join(TARGET)
         .join("release/eigenledger.wasm"))
 }

@@ -5,11 +5,14 @@ use std::path::Path;
 
 use anyhow::{bail, Context, Result};
 
+use crate::compressed;
 use crate::console::{self, say};
 use crate::layout::Layout;
 use crate::module;
-use crate::serve;
 use crate::single;
+
+/// The folder of the examples in the finished page.
+pub const EXAMPLES: &str = "examples";
 
 /// Builds everything that is served, and the single file.
 pub fn build(layout: &Layout) -> Result<()> {
@@ -23,11 +26,28 @@ pub fn build(layout: &Layout) -> Result<()> {
         &["run", "--silent", "build"],
     ))?;
     single::assemble(layout)?;
-    let served = serve::compress_folder(&layout.dist)?;
-    say(&format!(
-        "dist/ holds {:.0} kB, compressed.",
-        served as f64 / 1000.0
-    ));
+    bring_examples(layout)?;
+    compressed::write(layout)
+}
+
+/// The examples go along, with a page of links to them and one that uses the
+/// module by itself.
+fn bring_examples(layout: &Layout) -> Result<()> {
+    let folder = layout.dist.join(EXAMPLES);
+    fs::create_dir_all(&folder)?;
+    for source in [layout.root.join("www-examples"), layout.generated.clone()] {
+        for entry in fs::read_dir(&source)? {
+            let path = entry?.path();
+            let wanted = path.extension().is_some_and(|extension| {
+                ["json", "html", "js", "wasm"]
+                    .iter()
+                    .any(|known| extension == *known)
+            });
+            if wanted {
+                fs::copy(&path, folder.join(path.file_name().unwrap_or_default()))?;
+            }
+        }
+    }
     Ok(())
 }
 

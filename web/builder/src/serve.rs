@@ -1,6 +1,6 @@
 //! Serves `dist/` on this machine's loopback address, and nothing else.
 
-use std::fs::{self, File};
+use std::fs::File;
 use std::io;
 use std::path::{Component, Path, PathBuf};
 use std::sync::Arc;
@@ -8,6 +8,7 @@ use std::sync::Arc;
 use anyhow::{anyhow, Context, Result};
 use tiny_http::{Header, Method, Request, Response, Server};
 
+use crate::compressed;
 use crate::console::say;
 use crate::layout::Layout;
 use crate::page;
@@ -86,9 +87,9 @@ fn answer(request: Request, folder: &Path) -> io::Result<()> {
     let Some(path) = file_for(request.url(), folder) else {
         return request.respond(Response::from_string("No such file.").with_status_code(404));
     };
-    let compressed = accepts_gzip(&request)
-        .then(|| gzip_of(&path))
-        .filter(|gzip| gzip.is_file());
+    let compressed = accepts_brotli(&request)
+        .then(|| compressed::beside(&path))
+        .filter(|file| file.is_file());
     let file = File::open(compressed.as_ref().unwrap_or(&path))?;
     let mut response = Response::from_file(file);
     let mut headers = vec![
@@ -97,7 +98,7 @@ fn answer(request: Request, folder: &Path) -> io::Result<()> {
         header("X-Content-Type-Options", "nosniff"),
     ];
     if compressed.is_some() {
-        headers.push(header("Content-Encoding", "gzip"));
+        headers.push(header("Content-Encoding", "br"));
     }
     for header in headers.into_iter().flatten() {
         response.add_header(header);
@@ -126,16 +127,18 @@ fn file_for(url: &str, folder: &Path) -> Option<PathBuf> {
     file.is_file().then_some(file)
 }
 
-/// Where the compressed form of a file stands.
-pub fn gzip_of(path: &Path) -> PathBuf {
-    let mut name = path.as_os_str().to_owned();
-    name.push(".gz");
-    PathBuf::from(name)
+fn accepts_brotli(request: &Request) -> bool {
+    request
+        .headers()
+        .iter()
+        .any(|header| header.field.equiv("Accept-Encoding") && takes_brotli(header.value.as_str()))
 }
 
-fn accepts_gzip(request: &Request) -> bool {
-    request.headers().iter().any(|header| {
-        header.field.equiv("Accept-Encoding") && header.value.as_str().contains("gzip")
+/// `br` is listed, and not with the weight 0 that refuses it.
+fn takes_brotli(accepted: &str) -> bool {
+    accepted.split(',').any(|coding| {
+        let mut parts = coding.split(';').map(str::trim);
+        parts.next() == Some("br") && parts.next() != Some("q=0")
     })
 }
 
@@ -158,29 +161,33 @@ fn content_type(path: &Path) -> &'static str {
     }
 }
 
-/// Writes the compressed form beside every file that gains by it; returns the
-/// bytes of all files as a browser would load them.
-pub fn compress_folder(folder: &Path) -> Result<u64> {
-    let mut total = 0;
-    for entry in fs::read_dir(folder)? {
-        let path = entry?.path();
-        if path.is_dir() {
-            total += compress_folder(&path)?;
-        } else if path.extension().is_none_or(|extension| extension != "gz") {
-            total += compress_file(&path)?;
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn nothing_outside_the_folder_is_served() {
+        let folder = Path::new(env!("CARGO_MANIFEST_DIR"));
+        assert_eq!(
+            file_for("/Cargo.toml?x#y", folder),
+            Some(folder.join("Cargo.toml"))
+        );
+        for url in [
+            "/../Cargo.toml",
+            "/src/../../eslint.config.js",
+            "//etc/passwd",
+            "/no-such-file",
+            "/./",
+        ] {
+            assert_eq!(file_for(url, folder), None, "{url}");
         }
     }
-    Ok(total)
-}
 
-fn compress_file(path: &Path) -> Result<u64> {
-    let plain = fs::read(path)?;
-    let mut encoder = flate2::write::GzEncoder::new(Vec::new(), flate2::Compression::best());
-    io::Write::write_all(&mut encoder, &plain)?;
-    let compressed = encoder.finish()?;
-    if compressed.len() >= plain.len() {
-        return Ok(plain.len() as u64);
+    #[test]
+    fn brotli_is_sent_only_to_those_who_take_it() {
+        assert!(takes_brotli("gzip, deflate, br, zstd"));
+        assert!(takes_brotli("br;q=0.5"));
+        assert!(!takes_brotli("gzip, br;q=0"));
+        assert!(!takes_brotli("gzip, brotli"));
     }
-    fs::write(gzip_of(path), &compressed)?;
-    Ok(compressed.len() as u64)
 }

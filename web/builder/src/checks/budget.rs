@@ -1,35 +1,34 @@
 //! The bytes a first visit loads: they are stable where times are not, so they
 //! are what is checked.
 
-use std::fs;
-use std::path::Path;
-
 use anyhow::{bail, Result};
 
 use super::tally::Tally;
+use crate::compressed;
 use crate::layout::Layout;
-use crate::serve;
-use crate::single;
 
 /// All that a first visit loads, compressed, in bytes.
 const PAGE_BUDGET: u64 = 500_000;
 /// The module alone, compressed, in bytes.
 const MODULE_BUDGET: u64 = 250_000;
 
-/// Measures the served files as gzip sends them. What is kept for offline use
-/// is the same files again; its script is counted too.
+/// Measures the served files as they are sent. The script that keeps them for
+/// offline use is counted too.
 pub fn check(layout: &Layout) -> Result<Tally> {
-    let mut files = Vec::new();
-    collect(&layout.dist, &mut files)?;
-    let is_module = |name: &str| name.ends_with(".wasm");
-    let module: u64 = files
-        .iter()
-        .filter(|(name, _)| is_module(name))
-        .map(|(_, bytes)| bytes)
-        .sum();
-    let all: u64 = files.iter().map(|(_, bytes)| bytes).sum();
-    for (name, bytes) in &files {
-        println!("  {bytes:>8} {name}");
+    let (mut module, mut all) = (0, 0);
+    for path in compressed::served_files(&layout.dist)? {
+        let bytes = compressed::bytes_sent(&path)?;
+        println!(
+            "  {bytes:>8} {}",
+            path.strip_prefix(&layout.dist)?.display()
+        );
+        all += bytes;
+        if path
+            .extension()
+            .is_some_and(|extension| extension == "wasm")
+        {
+            module += bytes;
+        }
     }
     println!("  {module:>8} of {MODULE_BUDGET} bytes: the module");
     println!("  {all:>8} of {PAGE_BUDGET} bytes: everything served");
@@ -42,22 +41,4 @@ pub fn check(layout: &Layout) -> Result<Tally> {
         passed,
         failed: verdicts.len() - passed,
     })
-}
-
-/// Every served file with its size as it is sent.
-fn collect(folder: &Path, files: &mut Vec<(String, u64)>) -> Result<()> {
-    let mut entries: Vec<_> = fs::read_dir(folder)?.collect::<Result<_, _>>()?;
-    entries.sort_by_key(fs::DirEntry::file_name);
-    for entry in entries {
-        let path = entry.path();
-        let name = entry.file_name().to_string_lossy().into_owned();
-        if path.is_dir() {
-            collect(&path, files)?;
-        } else if !name.ends_with(".gz") && name != single::FILE_NAME {
-            let compressed =
-                fs::metadata(serve::gzip_of(&path)).or_else(|_| fs::metadata(&path))?;
-            files.push((name, compressed.len()));
-        }
-    }
-    Ok(())
 }
