@@ -24,7 +24,7 @@ pub(crate) fn describe(table: &RawTable, settings: &Settings, findings: &mut Fin
 fn transposition(widths: &[usize], settings: &Settings) -> Option<Repair> {
     let widest = widths.iter().copied().max().unwrap_or(0);
     let falling = widths.is_sorted_by(|a, b| a >= b);
-    if !falling || widest < 2 || widest > 3 {
+    if !falling || !(2..=3).contains(&widest) {
         return None;
     }
     let turned: Vec<usize> = (0..widest)
