@@ -154,7 +154,8 @@ def check_matrix_market(folder):
         name = path.name
         check(reading["usable"], f"{name}: {reading['diagnostics']}")
         found = [
-            complex(float(Fraction(re)), float(Fraction(im))) for re, im in reading["cells"]
+            cell and complex(*(float(Fraction(part)) for part in cell))
+            for cell in reading["cells"]
         ]
         check(found == [complex(x) for x in again.ravel()], f"{name}: {found} {again}")
     skew = numpy.array([[0.0, -1.0], [1.0, 0.0]])

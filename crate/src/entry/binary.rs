@@ -24,17 +24,27 @@ pub(crate) enum Float {
 
 impl Float {
     /// From the bits of a number of `width` bytes: 2, 4, 8 (binary16, 32, 64)
-    /// or 16. Sixteen bytes hold the 80-bit extended format with zero padding,
-    /// or binary128; a number with padding bits set is the latter. (A binary128
-    /// number whose 48 high bits are zero would be of size below 2^−16414, and
-    /// is taken for the former.)
-    pub fn from_bits(bits: u128, width: usize) -> Self {
-        match width {
-            2 => Self::interchange(bits, 10, 5),
-            4 => Self::interchange(bits, 23, 8),
-            8 => Self::interchange(bits, 52, 11),
-            _ if bits >> 80 == 0 => Self::extended(bits),
-            _ => Self::interchange(bits, 112, 15),
+    /// or 16, which are taken in the format given.
+    pub fn from_bits(bits: u128, width: usize, sixteen: Sixteen) -> Self {
+        match (width, sixteen) {
+            (2, _) => Self::interchange(bits, 10, 5),
+            (4, _) => Self::interchange(bits, 23, 8),
+            (8, _) => Self::interchange(bits, 52, 11),
+            (_, Sixteen::Extended) => Self::extended(bits),
+            (_, Sixteen::Quadruple) => Self::interchange(bits, 112, 15),
+        }
+    }
+
+    /// Whether a double could hold the number, if not exactly: zero, infinite,
+    /// not a number, or of ordinary size.
+    fn is_plausible(self) -> bool {
+        match self {
+            Self::Finite { magnitude: 0, .. } | Self::Infinite { .. } | Self::NotANumber => true,
+            Self::Finite {
+                magnitude,
+                exponent,
+                ..
+            } => (exponent + 128 - magnitude.leading_zeros() as i32).abs() <= LARGEST_EXPONENT,
         }
     }
 
@@ -77,6 +87,37 @@ impl Float {
             negative,
             magnitude,
             exponent: biased.max(1) - 16383 - 63,
+        }
+    }
+}
+
+/// What numbers of sixteen bytes are.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(crate) enum Sixteen {
+    /// The 80-bit extended format and six bytes of padding, of any content.
+    Extended,
+    /// IEEE 754 binary128.
+    Quadruple,
+}
+
+impl Sixteen {
+    /// Which of the two the numbers of a file are; the file does not say.
+    ///
+    /// They are extended (as on most machines) unless read so some number is of
+    /// absurd size, or all are zero with something in the padding, while read
+    /// as binary128 every one is of ordinary size.
+    pub fn of(numbers: impl Iterator<Item = u128> + Clone) -> Self {
+        let plausible = |format: Self| {
+            numbers
+                .clone()
+                .all(|bits| Float::from_bits(bits, 16, format).is_plausible())
+        };
+        let only_padding =
+            || numbers.clone().all(|bits| bits << 48 == 0) && numbers.clone().any(|bits| bits != 0);
+        if plausible(Self::Quadruple) && (!plausible(Self::Extended) || only_padding()) {
+            Self::Quadruple
+        } else {
+            Self::Extended
         }
     }
 }
@@ -264,7 +305,7 @@ mod tests {
     fn written(x: f64, places: i32) -> String {
         let mut out = String::new();
         write(
-            Float::from_bits(u128::from(x.to_bits()), 8),
+            Float::from_bits(u128::from(x.to_bits()), 8, Sixteen::Extended),
             Style::Decimal { places },
             &mut out,
         );
@@ -306,6 +347,23 @@ mod tests {
             "x",
         ] {
             assert!(parse(text).is_none(), "{text}");
+        }
+    }
+
+    #[test]
+    fn sixteen_bytes_are_told_apart() {
+        let tenth_128: u128 = 0x3FFB_9999_9999_9999_9999_9999_9999_999A;
+        let one_128: u128 = 0x3FFF << 112;
+        let one_80: u128 = 0x3FFF << 64 | 1 << 63;
+        let garbage: u128 = 0xFEDE << 112;
+        for (numbers, wanted) in [
+            (vec![one_80, 0], Sixteen::Extended),
+            (vec![one_80 | garbage, 0], Sixteen::Extended),
+            (vec![0, 0], Sixteen::Extended),
+            (vec![one_128, 0], Sixteen::Quadruple),
+            (vec![one_128, tenth_128], Sixteen::Quadruple),
+        ] {
+            assert_eq!(Sixteen::of(numbers.iter().copied()), wanted, "{numbers:x?}");
         }
     }
 

@@ -133,6 +133,7 @@ fn file(
             "The file says symmetric, not hermitian: both triangles hold the same complex numbers.",
         ));
     }
+    table.marked_lower = mirrored;
     for row in 0..rows {
         for col in 0..if mirrored { row + 1 } else { cols } {
             let cell = match header.symmetry {

@@ -8,7 +8,7 @@
 //! A double is written as a decimal where its exact decimal is short, else in
 //! the hexadecimal notation of C (`0x1.999999999999ap-4`), which cells may hold.
 
-use super::binary::{self, Float};
+use super::binary::{self, Float, Sixteen};
 use super::diagnostic::{count, excerpt, grouped, Finding, Kind, Refused};
 
 const MAGIC: &[u8] = b"\x93NUMPY";
@@ -69,10 +69,15 @@ pub(crate) fn text(bytes: &[u8], order: usize) -> Result<String, Refused> {
             "the whole file",
         )));
     }
-    let numbers = Numbers {
+    let mut numbers = Numbers {
         element: &header.element,
         data: &data[..needed],
+        sixteen: Sixteen::Extended,
     };
+    if header.element.width == 16 {
+        let reals = needed / 16;
+        numbers.sixteen = Sixteen::of((0..reals).map(|index| numbers.bits(index)));
+    }
     let style = binary::Style::for_cells(rows * cols);
     let mut out = String::with_capacity(rows * cols * 8);
     for row in 0..rows {
@@ -243,6 +248,8 @@ impl Header {
 struct Numbers<'a> {
     element: &'a Element,
     data: &'a [u8],
+    /// What numbers of sixteen bytes are.
+    sixteen: Sixteen,
 }
 
 impl Numbers<'_> {
@@ -267,7 +274,7 @@ impl Numbers<'_> {
     }
 
     fn float(&self, index: usize) -> Float {
-        Float::from_bits(self.bits(index), self.element.width)
+        Float::from_bits(self.bits(index), self.element.width, self.sixteen)
     }
 
     /// The bits of real number `index`.

@@ -78,6 +78,9 @@ pub(crate) struct RawTable {
     pub widest_seen: usize,
     /// Whether the layout marks the first row as a header.
     pub marked_head: bool,
+    /// Whether the layout says that the rows are the lower triangle of a
+    /// Hermitian matrix.
+    pub marked_lower: bool,
     in_row: usize,
 }
 
@@ -93,6 +96,7 @@ impl RawTable {
             rows_seen: 0,
             widest_seen: 0,
             marked_head: false,
+            marked_lower: false,
             in_row: 0,
         }
     }

@@ -189,6 +189,9 @@ fn collect(
         let stripped = labelled(table, source, labels, options);
         let shapes = match settings.shape {
             Some(shape) => vec![shape],
+            None if stripped.table.marked_lower && stripped.table.rows() > 1 => {
+                vec![Shape::LowerTriangle]
+            }
             None => shape::possible(&stripped.table.widths(), options.wanted),
         };
         let decimals = match settings.decimal {
@@ -198,7 +201,9 @@ fn collect(
         let mut found = false;
         for shape in shapes {
             let widths = stripped.table.widths();
-            if !fits_exactly(shape, &widths, options.wanted) || exceeds(shape, &widths, options) {
+            if !fits_exactly(shape, &stripped.table, options.wanted)
+                || exceeds(shape, &widths, options)
+            {
                 continue;
             }
             for &decimal in &decimals {
@@ -257,14 +262,13 @@ fn resolved(settings: &Settings, labels: Labels, decimal: DecimalMark, shape: Sh
 }
 
 /// Whether a shape, perhaps chosen for an earlier text, can hold these rows.
-fn fits_exactly(shape: Shape, widths: &[usize], wanted: Wanted) -> bool {
+fn fits_exactly(shape: Shape, table: &RawTable, wanted: Wanted) -> bool {
+    let widths = table.widths();
+    let square = table.marked_lower || !matches!(wanted, Wanted::List | Wanted::Any);
     match (shape, widths.first()) {
         (_, None) => false,
         (Shape::Full, Some(first)) => widths.iter().all(|width| width == first),
-        _ => {
-            !matches!(wanted, Wanted::List | Wanted::Any)
-                && shape::possible(widths, Wanted::Square).contains(&shape)
-        }
+        _ => square && shape::possible(&widths, Wanted::Square).contains(&shape),
     }
 }
 
