@@ -27,12 +27,12 @@ use crate::matrix::Dense;
 use crate::num::upper::UNIT;
 use crate::num::{Dyadic, Toward, Upper};
 
+use super::accurate::root_sum_square;
 use super::enclosure::Theorem;
 use super::frame::{times_power, Frame};
 use super::jacobi;
 use super::norms::{modulus_up, Norms, Rounding};
 use super::residual;
-use super::slices::root_sum_square;
 use super::spectrum::Spectrum;
 use super::tight::{Certificate, QUOTIENT_BITS};
 

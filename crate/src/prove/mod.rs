@@ -10,7 +10,9 @@
 //! What is *not* proved: the processor's and compiler's conformance to IEEE 754
 //! binary64 with round to nearest; the model behind the matrix.
 
+mod accurate;
 mod block;
+mod certificate;
 mod deep;
 mod diagonal;
 mod enclosure;
@@ -18,6 +20,7 @@ mod frame;
 mod jacobi;
 mod norms;
 mod proof;
+mod ranges;
 mod residual;
 mod slices;
 mod spectrum;
@@ -26,8 +29,10 @@ mod tight;
 #[cfg(test)]
 mod tests;
 
+pub use certificate::{certificate, statement};
 pub use enclosure::{Cluster, Enclosure, Theorem};
 pub use proof::{Condition, ConditionKind, Count, Level, Proof, Verdict};
+pub use ranges::{tolerance_ranges, Range};
 
 use crate::control::{Control, Flow, Stage};
 use crate::num::figure;

@@ -63,6 +63,23 @@ impl Norms {
     }
 }
 
+/// Bounds on the 2-norm of each column, and on the Frobenius norm: one pass,
+/// where the rest of [`Norms`] is not needed.
+pub(super) fn column_norms(matrix: &Dense) -> (Vec<Upper>, Upper) {
+    let columns: Vec<Upper> = (0..matrix.cols())
+        .map(|k| {
+            let re = square_sum_up(matrix.re.column(k).iter().copied());
+            let im = matrix
+                .im
+                .as_ref()
+                .map(|im| square_sum_up(im.column(k).iter().copied()));
+            re.plus(im.unwrap_or(Upper::ZERO)).sqrt()
+        })
+        .collect();
+    let frobenius = square_sum_up(columns.iter().map(|norm| norm.get())).sqrt();
+    (columns, frobenius)
+}
+
 /// A double not below √(re² + im²).
 pub(super) fn modulus_up(re: f64, im: f64) -> f64 {
     if re == 0.0 {

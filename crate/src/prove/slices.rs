@@ -17,11 +17,12 @@ use nalgebra::DMatrix;
 
 use crate::matrix::kernels::{accumulate, Orientation, Packing, Plane, Shape, Target, Update};
 use crate::matrix::Dense;
-use crate::num::eft::{two_product, two_sum};
-use crate::num::upper::{gamma, square_sum_up, UNIT};
+use crate::num::eft::two_sum;
+use crate::num::upper::{gamma, UNIT};
 use crate::num::Upper;
 
-use super::norms::{Norms, Rounding};
+use super::accurate::{absorb, zeros_like, zip_planes, Accurate};
+use super::norms::{column_norms, Rounding};
 
 /// Along which lines a grid is fixed.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -43,13 +44,6 @@ pub(super) struct Right<'a> {
     whole: &'a Dense,
     slices: [Dense; 3],
     remainders: [Dense; 3],
-}
-
-/// A product as high + low, and a bound on the 2-norm of each column's error.
-pub(super) struct Accurate {
-    pub high: Dense,
-    pub low: Dense,
-    pub loss: Vec<Upper>,
 }
 
 /// Bits a slice may have when products have `terms` terms.
@@ -119,17 +113,6 @@ fn lowered(sizes: &[Option<i32>], by: i32) -> Vec<Option<i32>> {
         .collect()
 }
 
-fn zip_planes(a: &mut Dense, b: &mut Dense, operation: impl Fn(&mut f64, &mut f64)) {
-    for (x, y) in a.re.iter_mut().zip(b.re.iter_mut()) {
-        operation(x, y);
-    }
-    if let (Some(a), Some(b)) = (&mut a.im, &mut b.im) {
-        for (x, y) in a.iter_mut().zip(b.iter_mut()) {
-            operation(x, y);
-        }
-    }
-}
-
 fn terms(matrix: &Dense) -> usize {
     if matrix.is_complex() {
         2 * matrix.cols()
@@ -161,7 +144,7 @@ impl Left {
             bits,
         );
         zip_planes(&mut remainder, &mut low, |x, y| *x += *y);
-        let rounding = Upper::of(UNIT).times(Norms::of(&remainder).frobenius);
+        let rounding = Upper::of(UNIT).times(column_norms(&remainder).1);
         Self {
             slices: [first, second, third],
             rest: remainder,
@@ -245,14 +228,6 @@ fn add_product(target: &mut Dense, left: &Dense, right: &Dense, packing: &mut Pa
     }
 }
 
-fn zeros_like(matrix: &Dense) -> Dense {
-    let zeros = |plane: &DMatrix<f64>| DMatrix::zeros(plane.nrows(), plane.ncols());
-    Dense {
-        re: zeros(&matrix.re),
-        im: matrix.im.as_ref().map(zeros),
-    }
-}
-
 /// The product of typed left and right factors, both complex or both real.
 ///
 /// Cost: six exact products and four plain ones, less those of zero slices.
@@ -287,13 +262,13 @@ pub(super) fn accurate_product(left: &Left, right: &Right<'_>) -> Accurate {
             continue;
         }
         add_product(&mut rest, a, x, &mut packing);
-        let norm = Norms::of(a).spectral;
-        for (size, column) in sizes.iter_mut().zip(Norms::of(x).columns) {
+        let (_, norm) = column_norms(a);
+        for (size, column) in sizes.iter_mut().zip(column_norms(x).0) {
             *size = size.plus(norm.times(column));
         }
     }
     absorb(&mut high, &mut low, &rest, &mut spills);
-    let whole = Norms::of(right.whole).columns;
+    let (whole, _) = column_norms(right.whole);
     let loss = (0..cols)
         .map(|k| {
             // Seven additions to the low part, and products below the normal range.
@@ -307,188 +282,11 @@ pub(super) fn accurate_product(left: &Left, right: &Right<'_>) -> Accurate {
     Accurate { high, low, loss }
 }
 
-/// high + low ← high + low + term; `spills` grows by the norms of what goes to
-/// the low part.
-fn absorb(high: &mut Dense, low: &mut Dense, term: &Dense, spills: &mut [Upper]) {
-    let mut squares = vec![Upper::ZERO; spills.len()];
-    let mut planes = |high: &mut DMatrix<f64>, low: &mut DMatrix<f64>, term: &DMatrix<f64>| {
-        for (k, square) in squares.iter_mut().enumerate() {
-            let mut errors = 0.0;
-            let terms = term.column(k);
-            let columns = high
-                .column_mut(k)
-                .into_iter()
-                .zip(low.column_mut(k))
-                .zip(terms.iter());
-            for ((h, l), t) in columns {
-                let (sum, error) = two_sum(*h, *t);
-                *h = sum;
-                *l += error;
-                errors += error * error;
-            }
-            *square = square.plus(stretched_squares(errors, term.nrows()));
-        }
-    };
-    planes(&mut high.re, &mut low.re, &term.re);
-    if let (Some(high), Some(low), Some(term)) = (&mut high.im, &mut low.im, &term.im) {
-        planes(high, low, term);
-    }
-    for (spill, square) in spills.iter_mut().zip(squares) {
-        *spill = spill.plus(square.sqrt());
-    }
-}
-
-/// A bound on an exact sum of `count` squares from its computed value.
-fn stretched_squares(computed: f64, count: usize) -> Upper {
-    let slack = Upper::of(1.0).plus(gamma(count + 1));
-    // γ once more for the division left out: 1/(1 − x) ≤ 1 + 2x for x ≤ 1/2.
-    Upper::of(computed)
-        .times(slack)
-        .times(slack)
-        .plus(Upper::of(count as f64 * f64::from_bits(1)))
-}
-
-/// product ← product − λₖ·(base_high + base_low)ₖ, column by column; the losses
-/// grow by |λₖ| times the base's and by the rounding of low parts.
-pub(super) fn subtract_scaled(product: &mut Accurate, base: &Accurate, values: &[f64]) {
-    for (k, &value) in values.iter().enumerate() {
-        let mut spill = Upper::ZERO;
-        let mut plane = |high: &mut DMatrix<f64>,
-                         low: &mut DMatrix<f64>,
-                         base: &DMatrix<f64>,
-                         base_low: &DMatrix<f64>| {
-            let mut sizes = 0.0f64;
-            for i in 0..high.nrows() {
-                let (p, e) = two_product(value, base[(i, k)]);
-                let (sum, error) = two_sum(high[(i, k)], -p);
-                let small = value * base_low[(i, k)];
-                let before = low[(i, k)];
-                high[(i, k)] = sum;
-                low[(i, k)] = ((before + error) - e) - small;
-                let size = before.abs() + error.abs() + e.abs() + small.abs();
-                sizes += size * size;
-            }
-            spill = spill.plus(stretched_squares(sizes, 4 * high.nrows()).sqrt());
-        };
-        plane(
-            &mut product.high.re,
-            &mut product.low.re,
-            &base.high.re,
-            &base.low.re,
-        );
-        if let (Some(high), Some(low), Some(base), Some(base_low)) = (
-            &mut product.high.im,
-            &mut product.low.im,
-            &base.high.im,
-            &base.low.im,
-        ) {
-            plane(high, low, base, base_low);
-        }
-        let rows = product.high.rows() as f64;
-        product.loss[k] = product.loss[k]
-            .plus(base.loss[k].times(Upper::of(value)))
-            .plus(gamma(6).times(spill))
-            // TwoProduct below the normal range: some ten subnormal steps an entry.
-            .plus(Upper::of(64.0 * rows * f64::from_bits(1)));
-    }
-}
-
-impl Accurate {
-    /// A matrix of doubles, exactly.
-    pub fn exactly(matrix: &Dense) -> Self {
-        Self {
-            high: matrix.clone(),
-            low: zeros_like(matrix),
-            loss: vec![Upper::ZERO; matrix.cols()],
-        }
-    }
-
-    /// Makes high the double nearest to high + low, entry by entry.
-    pub fn renormalise(&mut self) {
-        zip_planes(&mut self.high, &mut self.low, |h, l| {
-            (*h, *l) = two_sum(*h, *l)
-        });
-    }
-}
-
-/// A scalar as an unevaluated pair with a bound on its error.
-#[derive(Clone, Copy, Debug)]
-pub(super) struct Pair {
-    pub high: f64,
-    pub low: f64,
-    pub error: Upper,
-}
-
-/// Re(x_jᴴ y_k) and Im(x_jᴴ y_k) in about twice the working precision (the
-/// compensated dot product of T. Ogita, S. M. Rump and S. Oishi, SIAM J. Sci.
-/// Comput. 26, 2005, with the low parts of y). `loss` bounds what y's column
-/// itself misses times ‖x_j‖.
-pub(super) fn accurate_dot(
-    x: &Dense,
-    j: usize,
-    y: &Accurate,
-    k: usize,
-    loss: Upper,
-) -> (Pair, Pair) {
-    let mut re = Dot::default();
-    let mut im = Dot::default();
-    let n = x.rows();
-    for i in 0..n {
-        re.add(x.re[(i, j)], y.high.re[(i, k)], y.low.re[(i, k)]);
-    }
-    if let (Some(x_im), Some(high_im), Some(low_im)) = (&x.im, &y.high.im, &y.low.im) {
-        for i in 0..n {
-            re.add(x_im[(i, j)], high_im[(i, k)], low_im[(i, k)]);
-            im.add(x.re[(i, j)], high_im[(i, k)], low_im[(i, k)]);
-            im.add(-x_im[(i, j)], y.high.re[(i, k)], y.low.re[(i, k)]);
-        }
-    }
-    (re.finish(loss), im.finish(loss))
-}
-
-#[derive(Default)]
-struct Dot {
-    high: f64,
-    low: f64,
-    sizes: f64,
-    count: usize,
-}
-
-impl Dot {
-    fn add(&mut self, x: f64, high: f64, low: f64) {
-        let (p, e) = two_product(x, high);
-        let (sum, t) = two_sum(self.high, p);
-        let small = x * low;
-        self.high = sum;
-        self.low += (t + e) + small;
-        self.sizes += (t.abs() + e.abs()) + small.abs();
-        self.count += 1;
-    }
-
-    fn finish(self, loss: Upper) -> Pair {
-        let slack = Upper::of(1.0)
-            .plus(gamma(self.count + 3))
-            .plus(gamma(self.count + 3));
-        let error = gamma(self.count + 4)
-            .times(Upper::of(self.sizes).times(slack))
-            .plus(Upper::of(64.0 * self.count as f64 * f64::from_bits(1)))
-            .plus(loss);
-        Pair {
-            high: self.high,
-            low: self.low,
-            error,
-        }
-    }
-}
-
-/// A bound on √Σ of the squares of bounds.
-pub(super) fn root_sum_square(bounds: impl Iterator<Item = Upper>) -> Upper {
-    square_sum_up(bounds.map(Upper::get)).sqrt()
-}
-
 #[cfg(test)]
 mod tests {
-    use super::super::tests::Stream;
+    use super::super::accurate::subtract_scaled;
+    use super::super::norms::Norms;
+    use super::super::tests::support::Stream;
     use super::*;
     use crate::num::Dyadic;
 
@@ -586,30 +384,6 @@ mod tests {
                     "order {order}, column {k}: loss {relative:e}"
                 );
             }
-        }
-    }
-
-    #[test]
-    fn accurate_dots_hold_their_bound() {
-        let mut stream = Stream(5);
-        let x = random(20, true, &mut stream, true);
-        let y = Accurate::exactly(&random(20, true, &mut stream, false));
-        let (re, im) = accurate_dot(&x, 3, &y, 4, Upper::ZERO);
-        let (mut true_re, mut true_im) = (Dyadic::ZERO, Dyadic::ZERO);
-        let (x_im, y_im) = (
-            x.im.as_ref().expect("complex"),
-            y.high.im.as_ref().expect("complex"),
-        );
-        for i in 0..20 {
-            let (xr, xi) = (exact(x.re[(i, 3)]), exact(x_im[(i, 3)]));
-            let (yr, yi) = (exact(y.high.re[(i, 4)]), exact(y_im[(i, 4)]));
-            true_re = &(&true_re + &(&xr * &yr)) + &(&xi * &yi);
-            true_im = &(&true_im + &(&xr * &yi)) - &(&xi * &yr);
-        }
-        for (pair, truth) in [(re, true_re), (im, true_im)] {
-            let error = &(&exact(pair.high) + &exact(pair.low)) - &truth;
-            assert!(error.abs() <= exact(pair.error.get()), "{pair:?}");
-            assert!(pair.error.get() < 1e-10, "{pair:?}");
         }
     }
 }

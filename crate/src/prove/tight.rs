@@ -19,14 +19,13 @@ use crate::num::upper::square_sum_up;
 use crate::num::{Dyadic, Toward, Upper};
 use crate::problem::Problem;
 
+use super::accurate::{accurate_dot, root_sum_square, subtract_scaled, Accurate, Pair};
 use super::block;
 use super::enclosure::Theorem;
 use super::frame::Frame;
-use super::norms::{Norms, Rounding};
+use super::norms::{column_norms, Norms, Rounding};
 use super::residual::Gram;
-use super::slices::{
-    accurate_dot, accurate_product, root_sum_square, subtract_scaled, Accurate, Left, Pair, Right,
-};
+use super::slices::{accurate_product, Left, Right};
 use super::spectrum::Spectrum;
 
 /// Bits kept in quotients; their error is far below that of what is divided.
@@ -85,15 +84,15 @@ impl<'a> Certificate<'a> {
         let coupling = adjoint_product(&frame.vectors, &residual.high);
         let rounding = Rounding::new(order, order, frame.vectors.is_complex());
         let size = gram.vectors.spectral;
-        let highs = Norms::of(&residual.high);
-        let lows = Norms::of(&residual.low);
+        let (highs, _) = column_norms(&residual.high);
+        let (lows, _) = column_norms(&residual.low);
         let coupling_loss: Vec<Upper> = (0..order)
             .map(|k| {
-                let left_out = residual.loss[k].plus(lows.columns[k]);
+                let left_out = residual.loss[k].plus(lows[k]);
                 rounding
                     .factor
                     .times(size)
-                    .times(highs.columns[k])
+                    .times(highs[k])
                     .plus(size.times(left_out))
                     .plus(rounding.underflow)
             })
@@ -130,9 +129,9 @@ impl<'a> Certificate<'a> {
             // M = I needs no Xᴴ: ‖R‖ itself, over √(1 − φ).
             let root = floor.sqrt().next_down();
             let highs = Norms::of(&self.residual.high);
-            let lows = Norms::of(&self.residual.low);
+            let (lows, _) = column_norms(&self.residual.low);
             let losses: Vec<Upper> = (0..self.frame.order)
-                .map(|k| self.residual.loss[k].plus(lows.columns[k]))
+                .map(|k| self.residual.loss[k].plus(lows[k]))
                 .collect();
             let total = highs.spectral.plus(root_sum_square(losses.iter().copied()));
             radius = radius.least(total.over(root));

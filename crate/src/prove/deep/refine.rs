@@ -18,8 +18,9 @@ use crate::control::{Control, Flow, Stage};
 
 use super::fixed::{largest_bits, Fixed};
 
-/// Off-diagonals of this many units or fewer are left alone.
-const NEGLIGIBLE: u32 = 16;
+/// Off-diagonals of this many units times n² or fewer are left alone: a sweep
+/// adds some n units of rounding to each, which rotating would chase for ever.
+const NEGLIGIBLE: usize = 64;
 
 /// Most sweeps in a stage; from a useful start two or three are needed.
 const SWEEPS: usize = 40;
@@ -141,7 +142,7 @@ impl Rotation {
         let at = q * n + p;
         let re = s.re[at].clone();
         let im = s.im.as_ref().map_or(IBig::ZERO, |im| im[at].clone());
-        let threshold = IBig::from(NEGLIGIBLE);
+        let threshold = IBig::from(NEGLIGIBLE * n * n);
         if re.clone().abs() <= threshold && im.clone().abs() <= threshold {
             return None;
         }
