@@ -115,3 +115,6 @@ pub fn sensitivities(
     found.truncate(limit);
     found
 }
+
+#[cfg(test)]
+mod tests;

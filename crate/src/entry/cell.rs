@@ -1,6 +1,6 @@
 //! One cell: its text to an exact number, with an optional tolerance.
 //!
-//! The grammar is plain mathematics (`docs/cells.md` has it in full):
+//! The grammar is plain mathematics (`crate/docs/cells.md` has it in words):
 //!
 //! ```text
 //! cell     = sum [ ("±" | "+/-") sum ]

@@ -138,3 +138,27 @@ fn documents_that_are_refused_do_not_fit() {
         assert!(check(&text).is_some(), "{text}");
     }
 }
+
+/// The example problems are files of the repository, so only a native test
+/// can see them.
+#[cfg(not(target_arch = "wasm32"))]
+#[test]
+fn the_example_problems_fit_and_can_be_solved() {
+    let folder = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("../www-examples");
+    let mut seen = 0;
+    let entries = std::fs::read_dir(&folder).unwrap_or_else(|e| panic!("{folder:?}: {e}"));
+    for entry in entries.flatten() {
+        let path = entry.path();
+        if path.extension().is_none_or(|extension| extension != "json") {
+            continue;
+        }
+        let text = std::fs::read_to_string(&path).unwrap_or_else(|e| panic!("{path:?}: {e}"));
+        assert_valid(&text);
+        let document = opened(&text);
+        if let Err(reason) = super::problem(&document) {
+            panic!("{path:?}: {reason}");
+        }
+        seen += 1;
+    }
+    assert!(seen >= 6, "{seen} examples in {folder:?}");
+}
