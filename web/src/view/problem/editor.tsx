@@ -43,8 +43,8 @@ interface EditorProps {
 const theme = EditorView.theme({
   '&': { backgroundColor: 'var(--well)', border: '1px solid var(--rule)', borderRadius: '0.3rem', fontSize: '0.95rem' },
   '&.cm-focused': { outline: '2px solid var(--accent)', outlineOffset: '1px' },
-  '.cm-scroller': { fontFamily: 'var(--mono)', lineHeight: '1.55', maxHeight: '26rem', minHeight: '9rem' },
-  '.cm-content': { caretColor: 'var(--ink)', minHeight: '9rem' },
+  '.cm-scroller': { fontFamily: 'var(--mono)', lineHeight: '1.55', maxHeight: '26rem', minHeight: '7rem' },
+  '.cm-content': { caretColor: 'var(--ink)', minHeight: '7rem' },
   '.cm-cursor': { borderLeftColor: 'var(--ink)' },
   '.cm-gutters': { backgroundColor: 'transparent', color: 'var(--ink-faint)', border: 'none' },
   '.cm-lineNumbers .cm-gutterElement': { minWidth: '2.2em' },
