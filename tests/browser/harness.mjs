@@ -93,7 +93,7 @@ export async function solved(page, before = '') {
   await page.waitForFunction(
     (old) => {
       const title = [...document.querySelectorAll('.foot-line dd')].map((dd) => dd.getAttribute('title') ?? '');
-      const print = title.find((text) => /^[0-9a-f]{32,}$/.test(text)) ?? '';
+      const print = title.find((text) => /^[0-9a-f ]{32,}$/.test(text)) ?? '';
       return print !== '' && print !== old && document.querySelector('.foot-line progress') === null;
     },
     before,
