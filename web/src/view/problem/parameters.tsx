@@ -15,7 +15,7 @@ export function Parameters({ list, diagnostics }: ParametersProps) {
   const missing = diagnostics.filter(({ index }) => index === undefined);
   const add = (name: string) => { changeDocument({ parameters: [...list, { name, value: '' }] }); };
   return (
-    <div class="parameters">
+    <div class={list.length === 0 && missing.length === 0 ? 'parameters screen-only' : 'parameters'}>
       <h3>Parameters</h3>
       {list.length > 0 && (
         <table>
