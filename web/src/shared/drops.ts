@@ -1,7 +1,7 @@
 /** A file dropped anywhere on the page is opened; a first paste outside any field too. */
 import { isUntouchedExample } from './examples';
 import { openFile } from './files';
-import { replaceDocument } from './store';
+import { EMPTY_DOCUMENT, replaceDocument } from './store';
 
 function holdsFiles(event: DragEvent): boolean {
   return event.dataTransfer?.types.includes('Files') ?? false;
@@ -32,6 +32,6 @@ export function followDrops(): void {
     const text = event.clipboardData?.getData('text/plain') ?? '';
     if (text === '' || isField(event.target) || !isUntouchedExample()) return;
     event.preventDefault();
-    replaceDocument({ title: '', notes: '', matrix: text, parameters: [], choices: {}, claims: [] });
+    replaceDocument({ ...EMPTY_DOCUMENT, matrix: text });
   });
 }

@@ -1,5 +1,5 @@
 /** The example problems that ship with the page, in the order of their files. */
-import { notice, replaceDocument, sheet } from './store';
+import { notice, openDocument, sheet } from './store';
 import type { Opened } from './generated/eigenledger';
 import { withWorkbench } from './worker';
 
@@ -33,7 +33,7 @@ export function isUntouchedExample(): boolean {
 
 async function open(example: Example): Promise<void> {
   const opened = await withWorkbench(async (bench): Promise<Opened> => bench.open_file(new TextEncoder().encode(example.json), `${example.key}.json`));
-  if (opened.outcome === 'document') replaceDocument(opened.document);
+  if (opened.outcome === 'document') openDocument(opened.document, `${opened.document.title} is open.`);
   else if (opened.outcome === 'refused') notice.value = { tone: 'trouble', text: opened.reason };
 }
 

@@ -1,5 +1,5 @@
 /** Files in and out. What a file holds is decided by Rust from its bytes. */
-import { changeDocument, notice, replaceDocument, reportTrouble } from './store';
+import { EMPTY_DOCUMENT, notice, openDocument, reportTrouble } from './store';
 import type { Opened } from './generated/eigenledger';
 import { withWorkbench } from './worker';
 
@@ -20,12 +20,10 @@ export async function openFile(file: File): Promise<void> {
     const opened = await withWorkbench(async (bench): Promise<Opened> => bench.open_file(bytes, file.name));
     switch (opened.outcome) {
       case 'document':
-        replaceDocument(opened.document);
-        notice.value = null;
+        openDocument(opened.document, `${file.name} is open.`);
         break;
       case 'matrix':
-        changeDocument({ title: titleFrom(file.name), matrix: opened.text, metric: undefined, choices: {}, parameters: [], claims: [], notes: '' });
-        notice.value = null;
+        openDocument({ ...EMPTY_DOCUMENT, title: titleFrom(file.name), matrix: opened.text }, `${file.name} is open.`);
         break;
       case 'refused':
         notice.value = { tone: 'trouble', text: `${file.name}: ${opened.reason}` };

@@ -1,5 +1,5 @@
 /** The problem in the address: a fragment that Rust writes, checks and reads. */
-import { notice, replaceDocument, reportTrouble, sheet } from './store';
+import { notice, openDocument, reportTrouble, sheet } from './store';
 import type { Opened } from './generated/eigenledger';
 import { withWorkbench } from './worker';
 
@@ -23,7 +23,7 @@ export async function openLink(): Promise<boolean> {
   try {
     const opened = await withWorkbench(async (bench): Promise<Opened> => bench.link_decode(fragment));
     if (opened.outcome === 'document') {
-      replaceDocument(opened.document);
+      openDocument(opened.document, 'The problem in the link is open.');
       // A reload is to bring back what was made of it since, not the link again.
       history.replaceState(null, '', location.href.split('#')[0]);
       return true;

@@ -13,10 +13,20 @@ export interface Dated<T> {
   readonly value: T;
 }
 
+/** A document without anything in it. */
+export const EMPTY_DOCUMENT: ProblemDocument = {
+  title: '',
+  notes: '',
+  matrix: '',
+  parameters: [],
+  choices: {},
+  claims: [],
+};
+
 /** The document on the page and its revision, which every change raises. */
 export const sheet = signal<Dated<ProblemDocument>>({
   revision: 0,
-  value: { title: '', notes: '', matrix: '', parameters: [], choices: {}, claims: [] },
+  value: EMPTY_DOCUMENT,
 });
 
 /** The latest reading; may lag behind the document. */
@@ -54,6 +64,8 @@ export const work = signal<Work>({ state: 'starting' });
 export interface Notice {
   readonly tone: 'information' | 'trouble';
   readonly text: string;
+  /** Something to do about it, as a button. */
+  readonly action?: { readonly label: string; readonly run: () => void };
 }
 
 export const notice = signal<Notice | null>(null);
@@ -75,6 +87,21 @@ export function replaceDocument(value: ProblemDocument): void {
   sheet.value = { revision: sheet.value.revision + 1, value };
   chosenEigenvalue.value = null;
   chosenEntry.value = null;
+}
+
+/** Replaces the document at someone's wish, with a way back to the former one. */
+export function openDocument(value: ProblemDocument, said: string): void {
+  const before = sheet.value.value;
+  replaceDocument(value);
+  if (before.matrix.trim() === '') {
+    notice.value = null;
+    return;
+  }
+  const run = () => {
+    replaceDocument(before);
+    notice.value = null;
+  };
+  notice.value = { tone: 'information', text: said, action: { label: 'bring back the one before', run } };
 }
 
 /** Changes some fields of the document. */

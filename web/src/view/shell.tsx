@@ -9,7 +9,7 @@ function Section({ entry }: { entry: SectionEntry }) {
   return (
     <section id={entry.id} aria-labelledby={`${entry.id}-heading`} class={stale ? 'outdated' : ''} aria-busy={stale}>
       <div class="section-heading">
-        <h2 id={`${entry.id}-heading`}>{entry.heading}</h2>
+        <h2 id={`${entry.id}-heading`} tabIndex={-1}>{entry.heading}</h2>
         {stale && <span class="soft">of the text before the last change</span>}
       </div>
       <div class="section-body">
@@ -26,6 +26,11 @@ function Notice() {
       {current !== null && (
         <div class={`notice ${current.tone === 'trouble' ? 'warn' : ''}`}>
           <span>{current.text}</span>
+          {current.action && (
+            <button type="button" class="quiet" onClick={current.action.run}>
+              {current.action.label}
+            </button>
+          )}
           <button type="button" class="quiet" onClick={() => { notice.value = null; }}>
             Dismiss
           </button>
@@ -39,9 +44,11 @@ export function Shell() {
   return (
     <>
       <header class="masthead">
-        <a class="name" href="#problem" onClick={goTo('problem')}>
-          Eigenledger
-        </a>
+        <h1>
+          <a class="name" href="#problem" onClick={goTo('problem')}>
+            Eigenledger
+          </a>
+        </h1>
         <nav aria-label="Sections">
           <ul>
             {sections.map(({ id, heading }) => (

@@ -4,7 +4,7 @@ import { useCallback } from 'preact/hooks';
 
 import type { Adjustment } from '../../shared/generated/eigenledger';
 import { isUntouchedExample } from '../../shared/examples';
-import { changeDocument, latestReading, reading, replaceDocument, sheet } from '../../shared/store';
+import { changeDocument, EMPTY_DOCUMENT, latestReading, reading, replaceDocument, sheet } from '../../shared/store';
 import { Parameters } from './parameters';
 import { TextPart } from './text-part';
 import { Tools } from './tools';
@@ -18,7 +18,7 @@ const metricText = computed(() => sheet.value.value.metric ?? '');
 /** The example of a first visit gives way to the first paste, whole. */
 function pasteReplaces(text: string): boolean {
   if (!isUntouchedExample()) return false;
-  replaceDocument({ title: '', notes: '', matrix: text, parameters: [], choices: {}, claims: [] });
+  replaceDocument({ ...EMPTY_DOCUMENT, matrix: text });
   return true;
 }
 

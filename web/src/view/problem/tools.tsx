@@ -5,7 +5,7 @@ import { useRef } from 'preact/hooks';
 import { examples, openExample } from '../../shared/examples';
 import { copyText, fileName, openFile, saveFile } from '../../shared/files';
 import { linkToProblem } from '../../shared/link';
-import { notice, replaceDocument, reportTrouble, sheet } from '../../shared/store';
+import { EMPTY_DOCUMENT, notice, openDocument, reportTrouble, sheet } from '../../shared/store';
 import { withWorkbench } from '../../shared/worker';
 
 /** A link that could not be put on the clipboard, shown to be copied by hand. */
@@ -27,7 +27,7 @@ async function save(): Promise<void> {
 }
 
 function clear(): void {
-  replaceDocument({ title: '', notes: '', matrix: '', parameters: [], choices: {}, claims: [] });
+  openDocument(EMPTY_DOCUMENT, 'The sheet is clear.');
 }
 
 export function Tools() {
