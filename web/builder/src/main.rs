@@ -1,6 +1,7 @@
 //! `cargo page`: builds the module and the page, serves them on this machine,
 //! and runs every check of the project.
 
+mod bench;
 mod checks;
 mod compressed;
 mod console;
@@ -19,7 +20,8 @@ use anyhow::{bail, Result};
 const USAGE: &str = "\
 cargo page serve [--port N]   build, then serve dist/ on this machine
 cargo page build              build dist/ and the single file dist/eigenledger.html
-cargo page test [STEP]       run every check, or those steps whose name contains STEP";
+cargo page test [STEP]       run every check, or those steps whose name contains STEP
+cargo page bench             print the table of speeds, peers beside us";
 
 fn main() -> ExitCode {
     let words: Vec<String> = std::env::args().skip(1).collect();
@@ -46,6 +48,7 @@ fn run(words: &[String]) -> Result<ExitCode> {
             };
             serve::build_and_serve(&layout, port)?;
         }
+        ["bench"] => bench::run(&layout)?,
         ["test"] => return checks::run(&layout, ""),
         ["test", filter] => return checks::run(&layout, filter),
         _ => {

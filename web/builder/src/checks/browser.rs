@@ -57,7 +57,8 @@ fn scenario_files(folder: &Path) -> Result<Vec<PathBuf>> {
     Ok(files)
 }
 
-fn chromium() -> Result<PathBuf> {
+/// Chromium, installed first where that is allowed.
+pub fn chromium() -> Result<PathBuf> {
     let found = || {
         let named = std::env::var_os("CHROMIUM").map(PathBuf::from);
         named.or_else(|| CHROMIUM.iter().find_map(|name| console::find_program(name)))

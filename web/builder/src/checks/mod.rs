@@ -4,7 +4,7 @@
 //! passed and what failed, and the exit status is success only without
 //! failures.
 
-mod browser;
+pub mod browser;
 mod budget;
 mod outside;
 mod rust;
