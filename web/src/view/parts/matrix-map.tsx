@@ -93,7 +93,14 @@ function description(map: MagnitudePicture): string {
   return `Magnitudes of a matrix of order about ${String(order)}, from ${map.smallest} to ${map.largest}.${gathered}`;
 }
 
-export function MatrixMap({ map, title }: { map: MagnitudePicture; title: string }) {
+interface MatrixMapProps {
+  readonly map: MagnitudePicture;
+  readonly title: string;
+  /** Of complex entries the sign of the real part is shown. */
+  readonly complex?: boolean;
+}
+
+export function MatrixMap({ map, title, complex = false }: MatrixMapProps) {
   const canvas = useRef<HTMLCanvasElement>(null);
   useEffect(() => {
     const paint = () => {
@@ -120,7 +127,7 @@ export function MatrixMap({ map, title }: { map: MagnitudePicture; title: string
         </span>
         <span class="soft">
           by decades; <span class="key" aria-hidden="true" /> positive, <span class="key negative" aria-hidden="true" />{' '}
-          negative, blank zero
+          negative{complex ? ' real part' : ''}, blank zero
           {map.block > 1 ? `; a square is ${String(map.block)} × ${String(map.block)} entries` : ''}
         </span>
       </figcaption>

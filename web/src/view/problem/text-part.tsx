@@ -94,7 +94,7 @@ export function TextPart(props: TextPartProps) {
           />
         )}
       </div>
-      {reading?.map && <MatrixMap map={reading.map} title={label} />}
+      {reading?.map && <MatrixMap map={reading.map} title={label} complex={reading.complex} />}
     </div>
   );
 }
