@@ -1,6 +1,6 @@
 /** The example problems that ship with the page, in the order of their files. */
-import { notice, openDocument, sheet } from './store';
-import type { Opened } from './generated/eigenledger';
+import { notice, openDocument, replaceDocument, sheet } from './store';
+import type { Opened, ProblemDocument } from './generated/eigenledger';
 import { withWorkbench } from './worker';
 
 const files = import.meta.glob<string>('../../../www-examples/*.json', {
@@ -31,22 +31,24 @@ export function isUntouchedExample(): boolean {
   return firstExampleRevision === sheet.value.revision;
 }
 
-async function open(example: Example): Promise<void> {
+async function open(example: Example, put: (document: ProblemDocument) => void): Promise<void> {
   const opened = await withWorkbench(async (bench): Promise<Opened> => bench.open_file(new TextEncoder().encode(example.json), `${example.key}.json`));
-  if (opened.outcome === 'document') openDocument(opened.document, `${opened.document.title} is open.`);
+  if (opened.outcome === 'document') put(opened.document);
   else if (opened.outcome === 'refused') notice.value = { tone: 'trouble', text: opened.reason };
 }
 
 /** Opens the example of that key in place of the document. */
 export async function openExample(key: string): Promise<void> {
   const example = examples.find((candidate) => candidate.key === key);
-  if (example !== undefined) await open(example);
+  if (example === undefined) return;
+  await open(example, (document) => { openDocument(document, `${document.title} is open.`); });
 }
 
 /** What a first visit opens on. */
 export async function openFirstExample(): Promise<void> {
   const [example] = examples;
   if (example === undefined) return;
-  await open(example);
+  // In silence: a notice about a link that could not be opened has to stay.
+  await open(example, replaceDocument);
   firstExampleRevision = sheet.value.revision;
 }
