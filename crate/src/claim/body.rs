@@ -1,9 +1,11 @@
 //! Rows of figures after a claim's head.
 //!
 //! Rows end at line breaks, semicolons, `],` or `\\`; cells are apart by
-//! commas, tabs, bars or ampersands where there are any, else by blanks.
+//! commas, tabs, bars or ampersands where there are any, else by blanks. Other
+//! forms (LaTeX, HTML, Matrix Market, …) go through the entry stage.
 
-use super::figure::{raw, Raw};
+use super::figure::{of_cell, raw, Raw};
+use crate::entry::{self, Input, Origin, ReadOptions, Wanted};
 
 /// One cell with the multiplicity written behind it (`3 ×2`).
 #[derive(Clone, Debug)]
@@ -28,7 +30,43 @@ pub(super) enum BodyError {
 }
 
 /// Reads the rows of `text`; `first_line` is the line its first one stands on.
+/// What is not plain rows is left to the entry stage, which knows every other
+/// form a matrix comes in.
 pub(super) fn rows(text: &str, first_line: usize) -> Result<Vec<Row>, BodyError> {
+    plain_rows(text, first_line).or_else(|error| entry_rows(text).ok_or(error))
+}
+
+/// The rows the entry stage reads, each given cell as it is written.
+fn entry_rows(text: &str) -> Option<Vec<Row>> {
+    let options = ReadOptions {
+        wanted: Wanted::Any,
+        ..ReadOptions::default()
+    };
+    let entry = entry::read(Input::Text(text), &options);
+    if !entry.is_usable() || entry.question.is_some() {
+        return None;
+    }
+    let mut rows = Vec::with_capacity(entry.rows);
+    for row in 0..entry.rows {
+        let mut cells = Vec::with_capacity(entry.cols);
+        for col in 0..entry.cols {
+            let cell = entry.cell(row, col)?;
+            let value = cell.value.as_ref()?;
+            let written = text.get(cell.span.start as usize..cell.span.end as usize);
+            let raw = match (cell.origin, written) {
+                (Origin::Given, Some(written)) => {
+                    raw(written).unwrap_or_else(|| of_cell(written, value))
+                }
+                _ => of_cell(&value.to_string(), value),
+            };
+            cells.push(Cell { raw, many: 1 });
+        }
+        rows.push(Row { cells });
+    }
+    Some(rows)
+}
+
+fn plain_rows(text: &str, first_line: usize) -> Result<Vec<Row>, BodyError> {
     let text = text.replace("],", "];").replace("\\\\", ";");
     let mut rows = Vec::new();
     for (offset, line) in text.split('\n').enumerate() {

@@ -10,6 +10,8 @@ use dashu_base::{Abs, Sign};
 use dashu_int::{IBig, UBig};
 use dashu_ratio::RBig;
 
+use crate::entry::cell::{parse_cell, CellOptions, CellValue, Parameters};
+use crate::num::ExactReal;
 use crate::report::decimal::{leading_place, ten_to};
 
 /// How stated digits are to be understood.
@@ -97,8 +99,60 @@ pub(super) struct Raw {
     im: Part,
 }
 
-/// Reads one cell; `None` when it is not a number.
+/// Reads one figure: a number with its printed digits, else any cell of the
+/// entry stage's grammar, which is meant exactly (`(3 + √5)/2`). `None` when it
+/// is neither.
 pub(super) fn raw(text: &str) -> Option<Raw> {
+    printed(text).or_else(|| {
+        let cell = parse_cell(text, &Parameters::none(), CellOptions::default()).ok()?;
+        Some(of_cell(text, &cell))
+    })
+}
+
+/// Irrational figures are compared to 2,048 bits (about 600 digits).
+const IRRATIONAL_BITS: usize = 2_048;
+
+/// A cell of the entry stage as a figure. What is irrational is claimed within
+/// its enclosure.
+pub(super) fn of_cell(text: &str, cell: &CellValue) -> Raw {
+    let within = cell
+        .tolerance
+        .as_ref()
+        .map(|t| t.enclose(IRRATIONAL_BITS).upper_ratio());
+    let part = |value: &ExactReal| {
+        let (value, loose) = match value.rational() {
+            Some(value) => (value, None),
+            None => {
+                let ends = value.enclose(IRRATIONAL_BITS);
+                let (low, high) = (ends.lower_ratio(), ends.upper_ratio());
+                (
+                    (&low + &high) / RBig::from(2),
+                    Some((high - low) / RBig::from(2)),
+                )
+            }
+        };
+        let negative = value < RBig::ZERO;
+        let within = match (&within, loose) {
+            (Some(within), Some(loose)) => Some(within + loose),
+            (Some(within), None) => Some(within.clone()),
+            (None, loose) => loose,
+        };
+        Part {
+            value,
+            negative,
+            place: None,
+            within,
+        }
+    };
+    Raw {
+        text: text.trim().to_owned(),
+        re: part(&cell.re),
+        im: part(&cell.im),
+    }
+}
+
+/// Reads a number with its printed digits.
+fn printed(text: &str) -> Option<Raw> {
     let text = text.trim();
     let plain: String = text
         .chars()

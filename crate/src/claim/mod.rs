@@ -60,7 +60,7 @@ use crate::problem::Problem;
 /// matching in O(n³) at worst; for a state after k reflectors O(k·n³) interval
 /// operations of a few hundred bits; for vectors O(n²) a vector and precision.
 pub fn judge(claim: &Claim, problem: &Problem, evidence: &mut Evidence<'_>) -> Verdict {
-    match &claim.kind {
+    let verdict = match &claim.kind {
         Kind::Values(values) => values::judge(values, evidence),
         Kind::Vector {
             value,
@@ -95,7 +95,8 @@ pub fn judge(claim: &Claim, problem: &Problem, evidence: &mut Evidence<'_>) -> V
             output::judge(values, columns.as_ref(), problem, evidence)
         }
         Kind::Scalar(which, figure) => scalars::judge(*which, figure, problem, evidence),
-    }
+    };
+    verdict.spoken()
 }
 
 #[cfg(test)]

@@ -2,7 +2,7 @@
 
 use serde::{Deserialize, Serialize};
 
-use super::verdict::{Verdict, Word};
+use super::verdict::{sentence, Verdict, Word};
 use super::{judge, read, split, Evidence};
 use crate::control::{Control, Flow, Stage};
 use crate::problem::Problem;
@@ -56,7 +56,7 @@ pub fn judge_all(
             }
             let (verdict, error) = match read(claim) {
                 Ok(claim) => (Some(judge(&claim, problem, evidence)), None),
-                Err(error) => (None, Some(error.to_string())),
+                Err(error) => (None, Some(sentence(&error.to_string()))),
             };
             let wrong = verdict.as_ref().is_some_and(|v| v.word == Word::Refuted);
             if wrong && judgement.first_wrong.is_none() {

@@ -174,7 +174,30 @@ pub struct Drawn {
     pub proven_high: f64,
 }
 
+/// The text as a sentence: a capital to begin with and a full stop.
+pub(super) fn sentence(text: &str) -> String {
+    let mut characters = text.chars();
+    let mut whole = String::with_capacity(text.len() + 1);
+    if let Some(first) = characters.next() {
+        whole.push(first.to_ascii_uppercase());
+    }
+    whole.push_str(characters.as_str());
+    if !whole.is_empty() && !whole.ends_with(['.', '!', '?']) {
+        whole.push('.');
+    }
+    whole
+}
+
 impl Verdict {
+    /// The verdict with all its texts as sentences.
+    pub(super) fn spoken(mut self) -> Self {
+        self.sentence = sentence(&self.sentence);
+        for finding in &mut self.findings {
+            finding.text = sentence(&finding.text);
+        }
+        self
+    }
+
     /// A verdict with nothing but its word and sentence.
     pub(super) fn new(word: Word, sentence: impl Into<String>) -> Self {
         Self {

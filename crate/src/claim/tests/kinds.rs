@@ -104,11 +104,11 @@ fn invariants_tell_or_do_not() {
         .map(|f| f.text.as_str())
         .collect();
     assert!(
-        texts[0].starts_with("the trace could not have told"),
+        texts[0].starts_with("The trace could not have told"),
         "{texts:?}"
     );
     assert!(
-        texts[1].starts_with("the determinant could have told"),
+        texts[1].starts_with("The determinant could have told"),
         "{texts:?}"
     );
 }
@@ -458,4 +458,31 @@ fn outside_output_is_measured() {
         &right.replace("0.5 2;", "0.5 2.0000001;"),
         Word::Refuted,
     );
+}
+
+#[test]
+fn closed_forms_and_every_form_of_entry() {
+    let problem = golden();
+    expect(
+        &problem,
+        "eigenvalues: (5 + √5)/2, (5 - √5)/2",
+        Word::Confirmed,
+    );
+    expect(
+        &problem,
+        "eigenvalues: (5 + √5)/2, (5 - √6)/2",
+        Word::Refuted,
+    );
+    let rows = real(&[&[2, 1, 0], &[1, 3, 0], &[0, 0, 4]]);
+    for text in [
+        "vectors: \\begin{pmatrix} 0.8507 & 0.5257 & 0 \\\\ -0.5257 & 0.8507 & 0 \\\\ 0 & 0 & 1 \\end{pmatrix}",
+        "vectors: <table><tr><td>0.8507</td><td>0.5257</td><td>0</td></tr><tr><td>-0.5257</td>\
+         <td>0.8507</td><td>0</td></tr><tr><td>0</td><td>0</td><td>1</td></tr></table>",
+        "vectors:\n%%MatrixMarket matrix array real general\n3 3\n0.8507\n-0.5257\n0\n0.5257\n0.8507\n0\n0\n0\n1\n",
+    ] {
+        expect(&rows, text, Word::Confirmed);
+        let wrong = text.replacen("0.8507", "0.8570", 1);
+        assert_ne!(wrong, text);
+        expect(&rows, &wrong, Word::Refuted);
+    }
 }

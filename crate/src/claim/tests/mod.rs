@@ -1,6 +1,7 @@
 //! Claims about problems whose answers are known.
 
 mod kinds;
+mod proven;
 mod published;
 mod random;
 mod slips;
@@ -69,9 +70,9 @@ fn expect(problem: &Problem, text: &str, word: Word) -> Verdict {
 /// Expects a refutation that names a cause with `words` in it.
 fn expect_cause(problem: &Problem, text: &str, words: &str) {
     let verdict = expect(problem, text, Word::Refuted);
-    let named = verdict
-        .findings
-        .iter()
-        .any(|finding| finding.kind == FindingKind::Cause && finding.text.contains(words));
+    let named = verdict.findings.iter().any(|finding| {
+        finding.kind == FindingKind::Cause
+            && finding.text.to_lowercase().contains(&words.to_lowercase())
+    });
     assert!(named, "no cause with “{words}”: {text}\n{verdict:#?}");
 }
