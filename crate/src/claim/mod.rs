@@ -60,6 +60,17 @@ use crate::problem::Problem;
 /// matching in O(n³) at worst; for a state after k reflectors O(k·n³) interval
 /// operations of a few hundred bits; for vectors O(n²) a vector and precision.
 pub fn judge(claim: &Claim, problem: &Problem, evidence: &mut Evidence<'_>) -> Verdict {
+    let needs_values = !matches!(
+        claim.kind,
+        Kind::Tridiagonal { .. } | Kind::Reflector { .. } | Kind::State { .. } | Kind::Cholesky(_)
+    );
+    if needs_values && evidence.order() != problem.matrix.order() {
+        return Verdict::new(
+            Word::Undecided,
+            "no enclosure of the eigenvalues is proven, so nothing can be told",
+        )
+        .spoken();
+    }
     let verdict = match &claim.kind {
         Kind::Values(values) => values::judge(values, evidence),
         Kind::Vector {

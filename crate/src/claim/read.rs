@@ -12,6 +12,26 @@
 //!   …
 //! ```
 //!
+//! | head | figures |
+//! |---|---|
+//! | `eigenvalue`, `eigenvalue 2` | one value (the second in ascending order) |
+//! | `eigenvalues`, `some eigenvalues` | all of them with multiplicities (`3 ×2`), or some |
+//! | `frequency`, `frequencies`, `angular frequency 1`, … | readings √λ/2π and √λ |
+//! | `vector`, `vector 2`, `vector for 3.618` | components, any scale and phase |
+//! | `vectors`, `vectors, orthonormal` | n rows; the columns are vectors |
+//! | `decomposition` | a row of values, then n rows with the vectors as columns |
+//! | `tridiagonal`, `tridiagonal with Q` | n rows, or diagonal and off-diagonal; then n rows of Q |
+//! | `reflector 1`, `reflector 1 scalar 0.5` | v, with or without its leading zeros; H itself |
+//! | `matrix 1` | the matrix after that many reflectors |
+//! | `cholesky` | L, or Lᴴ |
+//! | `polynomial` | n + 1 coefficients, highest power first |
+//! | `determinant`, `trace`, `condition`, `radius` | one number |
+//! | `positive`, `negative`, `zero` | how many eigenvalues are |
+//! | `output` | an outside solver's values, then its vectors as columns |
+//!
+//! Options: `truncated` (the last digit is cut off, not rounded), `exact`,
+//! `4 figures`, `± 0.01`.
+//!
 //! Several claims may follow one another in one text: a worked calculation.
 
 use dashu_ratio::RBig;

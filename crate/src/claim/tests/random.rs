@@ -321,14 +321,14 @@ fn run(seed: u64, proven: bool) -> usize {
 
 #[test]
 fn exact_evidence_never_errs() {
-    let judged: usize = (0..800).map(|seed| run(seed * 7_919 + 1, false)).sum();
-    assert!(judged > 4_000, "only {judged} claims were judged");
+    let judged: usize = (0..500).map(|seed| run(seed * 7_919 + 1, false)).sum();
+    assert!(judged > 2_500, "only {judged} claims were judged");
 }
 
 #[test]
 fn proven_evidence_never_errs() {
-    let judged: usize = (0..150).map(|seed| run(seed * 104_729 + 3, true)).sum();
-    assert!(judged > 700, "only {judged} claims were judged");
+    let judged: usize = (0..80).map(|seed| run(seed * 104_729 + 3, true)).sum();
+    assert!(judged > 350, "only {judged} claims were judged");
 }
 
 #[test]
@@ -336,4 +336,187 @@ fn the_stream_moves_figures() {
     assert_eq!(moved("1.05", -10), "0.95");
     assert_eq!(moved("-0.02", 3), "0.01");
     assert_eq!(moved("9.99", 2), "10.01");
+}
+
+/// A random Hermitian matrix of order 3 with small Gaussian integers.
+fn gaussian(stream: &mut Stream) -> Vec<Vec<(i64, i64)>> {
+    let mut rows = vec![vec![(0, 0); 3]; 3];
+    for i in 0..3 {
+        for j in 0..=i {
+            let (a, b) = (stream.below(11) - 5, stream.below(11) - 5);
+            let b = if i == j { 0 } else { b };
+            rows[i][j] = (a, b);
+            rows[j][i] = (a, -b);
+        }
+    }
+    rows
+}
+
+#[test]
+fn complex_claims_never_err() {
+    let mut judged = 0;
+    for seed in 0..150 {
+        let mut stream = Stream(seed * 15_485_863 + 11);
+        let rows = gaussian(&mut stream);
+        let borrowed: Vec<&[(i64, i64)]> = rows.iter().map(Vec::as_slice).collect();
+        let problem = hermitian(&borrowed);
+        let doubles = DMatrix::from_fn(3, 3, |i, j| {
+            nalgebra::Complex::new(rows[i][j].0 as f64, rows[i][j].1 as f64)
+        });
+        let solved = SymmetricEigen::new(doubles);
+        let mut ascending = [0usize, 1, 2];
+        ascending.sort_by(|&i, &j| solved.eigenvalues[i].total_cmp(&solved.eigenvalues[j]));
+        let values: Vec<f64> = ascending.iter().map(|&i| solved.eigenvalues[i]).collect();
+        if values[1] - values[0] < 1e-2 || values[2] - values[1] < 1e-2 {
+            continue;
+        }
+        let mut evidence = evidence(&problem);
+        let mut trial = Trial {
+            problem: &problem,
+            seed,
+            judged: 0,
+        };
+        about_values(&mut trial, &mut evidence, &values, 5, &mut stream, true);
+        for (k, &column) in ascending.iter().enumerate() {
+            let parts: Option<Vec<(String, String)>> = (0..3)
+                .map(|row| {
+                    let x = solved.eigenvectors[(row, column)];
+                    Some((rounded(x.re, 5)?, rounded(x.im, 5)?))
+                })
+                .collect();
+            let Some(mut parts) = parts else { continue };
+            let written = |parts: &[(String, String)]| {
+                let cells: Vec<String> = parts
+                    .iter()
+                    .map(|(re, im)| {
+                        let plus = if im.starts_with('-') { "" } else { "+" };
+                        format!("{re}{plus}{im}i")
+                    })
+                    .collect();
+                format!("vector {}: {}", k + 1, cells.join(" "))
+            };
+            trial.check(&mut evidence, &written(&parts), Word::Confirmed, false);
+            let largest = (0..3)
+                .reduce(|best, row| {
+                    let size = |row: usize| solved.eigenvectors[(row, column)].norm_sqr();
+                    if size(row) > size(best) {
+                        row
+                    } else {
+                        best
+                    }
+                })
+                .unwrap_or(0);
+            // Scale and phase are fixed to about 2h/|x|; 20 units are beyond.
+            let other = (largest + 1) % 3;
+            parts[other].0 = moved(&parts[other].0, 20);
+            trial.check(&mut evidence, &written(&parts), Word::Refuted, true);
+        }
+        judged += trial.judged;
+    }
+    assert!(judged > 500, "only {judged} claims were judged");
+}
+
+/// Claims of every kind and several shapes against problems of every small
+/// order: a verdict or an error, never a panic.
+#[test]
+fn any_claim_meets_any_problem() {
+    let heads = [
+        "eigenvalue",
+        "eigenvalue 2",
+        "eigenvalues",
+        "some eigenvalues",
+        "frequency",
+        "frequencies",
+        "angular frequencies",
+        "vector",
+        "vector 2",
+        "vector for 1.0",
+        "vectors",
+        "vectors, orthonormal",
+        "decomposition",
+        "tridiagonal",
+        "tridiagonal with Q",
+        "reflector 1",
+        "reflector 2",
+        "reflector 1 scalar 1",
+        "matrix 1",
+        "matrix 2",
+        "cholesky",
+        "polynomial",
+        "determinant",
+        "trace",
+        "positive",
+        "negative",
+        "zero",
+        "condition",
+        "radius",
+        "output",
+        "eigenvalues, truncated",
+        "eigenvalues, 3 figures",
+    ];
+    let bodies = [
+        "0",
+        "1.5",
+        "1 2",
+        "0 0 0",
+        "1.0i 2",
+        "1 2; 3 4",
+        "1 2; 0 1; 1 0",
+        "0 0; 0 0",
+        "1 2 3; 4 5 6; 7 8 9",
+        "1 2 3; 1 2",
+        "1 1 1; 0.1 0.2 0.3; 0 0 1; 1 0 0",
+        "1e300 -1e-300",
+    ];
+    let problems = [
+        real(&[&[3]]),
+        real(&[&[0]]),
+        real(&[&[1, 2], &[2, -1]]),
+        real(&[&[0, 0], &[0, 0]]),
+        pair(&[&[2, -1], &[-1, 1]], &[&[2, 1], &[1, 3]]),
+        real(&[&[4, 1, 2], &[1, 3, 0], &[2, 0, 1]]),
+        real(&[&[1, 0, 0], &[0, 1, 0], &[0, 0, 1]]),
+        hermitian(&[
+            &[(1, 0), (0, -3), (4, 0)],
+            &[(0, 3), (2, 0), (0, 0)],
+            &[(4, 0), (0, 0), (7, 0)],
+        ]),
+    ];
+    let mut judged = 0;
+    for problem in &problems {
+        let mut exact = evidence(problem);
+        let mut nothing = Evidence::enclosed(Vec::new(), None);
+        for head in heads {
+            for body in bodies {
+                let Ok(claim) = read(&format!("{head}: {body}")) else {
+                    continue;
+                };
+                let verdict = judge(&claim, problem, &mut exact);
+                assert!(!verdict.sentence.is_empty(), "{head}: {body}");
+                let blind = judge(&claim, problem, &mut nothing);
+                // Without evidence nothing may contradict what exact evidence says.
+                let contradicts = matches!(
+                    (verdict.word, blind.word),
+                    (Word::Confirmed, Word::Refuted) | (Word::Refuted, Word::Confirmed)
+                );
+                assert!(!contradicts, "{head}: {body}\n{verdict:#?}\n{blind:#?}");
+                judged += 1;
+            }
+        }
+    }
+    assert!(judged > 800, "only {judged} claims were judged");
+}
+
+proptest::proptest! {
+    #[test]
+    fn reading_never_panics(text in "\\PC{0,80}", head in "[a-z]{1,12}( [0-9]{1,3})?(, [a-z ]{1,9})?") {
+        for part in crate::claim::split(&text) {
+            proptest::prop_assert!(!part.is_empty());
+        }
+        for claim in [text.clone(), format!("{head}: {text}"), format!("eigenvalues: {text}")] {
+            if let Err(error) = read(&claim) {
+                proptest::prop_assert!(!error.to_string().is_empty());
+            }
+        }
+    }
 }

@@ -121,6 +121,14 @@ fn missing_conjugate_is_named() {
     ]);
     let right = "matrix 1: 1 5.000i 0; -5.000i 5.200 -2.400i; 0 2.400i 3.800";
     expect(&problem, right, Word::Confirmed);
+    expect(&problem, "reflector 1: 8.000i 4.000", Word::Confirmed);
+    expect(&problem, "reflector 1: -4.000 2.000i", Word::Confirmed);
+    expect(&problem, "reflector 1: 8.000i -4.000", Word::Refuted);
+    expect(
+        &problem,
+        "tridiagonal: 1 5.200 3.800; 5.000 2.400",
+        Word::Confirmed,
+    );
     let unconjugated = unconjugated_state();
     expect_cause(&problem, &unconjugated, "a conjugate is missing");
 }
