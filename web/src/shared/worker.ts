@@ -10,6 +10,7 @@ import * as Comlink from 'comlink';
 
 import type { Workbench } from './generated/eigenledger';
 import { compiledModule, startWorker } from './parts';
+import { work } from './store';
 
 export type RemoteWorkbench = Comlink.Remote<Workbench>;
 
@@ -82,9 +83,10 @@ export async function withWorkbench<T>(act: (bench: RemoteWorkbench) => Promise<
   } catch (reason) {
     if (isTrap(reason)) {
       await endWorker();
-      throw new Error('The module stopped on this problem and was started afresh; the problem is unchanged.', {
-        cause: reason,
-      });
+      const said = 'The module stopped on this problem and was started afresh; the problem is unchanged.';
+      // What the module held is gone: the figures have to be computed again.
+      work.value = { state: 'failed', reason: said };
+      throw new Error(said, { cause: reason });
     }
     throw reason;
   }
@@ -94,7 +96,8 @@ export async function withWorkbench<T>(act: (bench: RemoteWorkbench) => Promise<
 export async function endWorker(): Promise<void> {
   const ending = running;
   running = null;
-  const mine = await ending;
+  // A worker that never started needs no end.
+  const mine = await ending?.catch(() => null);
   mine?.worker.terminate();
   mine?.end(new Ended());
 }
