@@ -145,16 +145,23 @@ impl Html<'_> {
                 self.refuse_spans(open, close, findings);
             }
             "/td" | "/th" => self.end_cell(),
-            "br" | "p" | "/p" | "div" | "/div" => self.write(" "),
-            "sup" => self.write("^("),
-            "/sup" => self.write(")"),
-            "sub" => self.write("_"),
+            "br" | "p" | "/p" | "div" | "/div" => self.write(" ", open, close),
+            "sup" => self.write("^(", open, close),
+            "/sup" => self.write(")", open, close),
+            "sub" => self.write("_", open, close),
             _ => {}
         }
     }
 
-    fn write(&mut self, text: &str) {
+    /// Writes what a tag prints; the cell then covers the tag as well.
+    fn write(&mut self, text: &str, open: usize, close: usize) {
         if let Some(cell) = &mut self.cell {
+            if !clean::is_blank(text) {
+                if clean::is_blank(&cell.text) {
+                    cell.start = open;
+                }
+                cell.end = close;
+            }
             cell.text.push_str(text);
         }
     }
@@ -247,10 +254,10 @@ mod tests {
 
     #[test]
     fn spans_cover_the_text_of_the_cell() {
-        let source = "<tr><td> <b>12</b> </td><td>&minus;3</td></tr>";
+        let source = "<tr><td> <b>12</b> </td><td>&minus;3</td><td>10<sup>2</sup></td></tr>";
         let table = read(source, RawTable::new(20), &mut Findings::new(1));
         let spans: Vec<_> = table.iter().map(|cell| cell.span.of(source)).collect();
-        assert_eq!(spans, ["12", "&minus;3"]);
+        assert_eq!(spans, ["12", "&minus;3", "10<sup>2</sup>"]);
     }
 
     #[test]

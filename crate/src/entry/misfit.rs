@@ -1,21 +1,43 @@
 //! What is wrong with rows that make no square matrix.
 
-use super::diagnostic::{count, Finding, Findings, Kind};
+use super::diagnostic::{count, grouped, Finding, Findings, Kind};
 use super::raw::RawTable;
 use super::repair::{Action, Repair};
 use super::settings::{Settings, Wanted};
-use super::shape;
 use super::span::Bytes;
+use super::{shape, ReadOptions};
 use std::collections::BTreeMap;
 
-/// Says which rows are ragged, or that the rectangle is not square.
-pub(crate) fn describe(table: &RawTable, settings: &Settings, findings: &mut Findings) {
+/// Says which rows are ragged, that the rectangle is not square, or that the
+/// matrix would be too large.
+pub(crate) fn describe(
+    table: &RawTable,
+    settings: &Settings,
+    options: &ReadOptions,
+    findings: &mut Findings,
+) {
     let widths = table.widths();
     let Some(&first) = widths.first() else { return };
-    if widths.iter().all(|&width| width == first) {
+    let order = options.limits.order;
+    let rectangle = widths.iter().all(|&width| width == first);
+    let square = matches!(options.wanted, Wanted::Square | Wanted::Metric);
+    let shape_fits = !shape::possible(&widths, options.wanted).is_empty();
+    if shape_fits || (rectangle && !square) {
+        let size = count(widths.iter().sum(), "cell");
+        findings.push(
+            Finding::error(
+                Kind::TooLarge,
+                format!(
+                    "{size} make a matrix of more than order {} here.",
+                    grouped(order)
+                ),
+            )
+            .expected(format!("at most {} rows and columns", grouped(order))),
+        );
+    } else if rectangle {
         not_square(table, settings, findings);
     } else {
-        ragged(table, &widths, settings, findings);
+        ragged(table, &widths, settings, options.wanted, findings);
     }
 }
 
@@ -34,11 +56,20 @@ fn transposition(widths: &[usize], settings: &Settings) -> Option<Repair> {
     fits.then(|| Repair::new("Write the columns as rows", Action::Transpose, *settings))
 }
 
-fn ragged(table: &RawTable, widths: &[usize], settings: &Settings, findings: &mut Findings) {
-    let (wanted, reason) = wanted_width(widths);
+fn ragged(
+    table: &RawTable,
+    widths: &[usize],
+    settings: &Settings,
+    wanted: Wanted,
+    findings: &mut Findings,
+) {
+    let (expected_of, reason) = match wanted {
+        Wanted::Square | Wanted::Metric => wanted_width(widths),
+        Wanted::List | Wanted::Any => usual_width(widths),
+    };
     let mut repair = transposition(widths, settings);
     for (row, &width) in widths.iter().enumerate() {
-        let expected = wanted(row);
+        let expected = expected_of(row);
         if width == expected {
             continue;
         }
@@ -61,28 +92,22 @@ fn ragged(table: &RawTable, widths: &[usize], settings: &Settings, findings: &mu
     }
 }
 
-/// The width wanted of each row, and why: a triangle when most rows follow one,
-/// else the width most rows have.
-fn wanted_width(widths: &[usize]) -> (Box<dyn Fn(usize) -> usize>, &'static str) {
+/// The width wanted of each row, and why.
+type WantedWidth = (Box<dyn Fn(usize) -> usize>, &'static str);
+
+/// A triangle when most rows follow one, else the width most rows have.
+fn wanted_width(widths: &[usize]) -> WantedWidth {
     let rows = widths.len();
-    let lower = widths
-        .iter()
-        .enumerate()
-        .filter(|&(row, &width)| width == row + 1)
-        .count();
-    let upper = widths
-        .iter()
-        .enumerate()
-        .filter(|&(row, &width)| width == rows - row)
-        .count();
-    let mut tally: BTreeMap<usize, usize> = BTreeMap::new();
-    for &width in widths {
-        *tally.entry(width).or_default() += 1;
-    }
-    let (&usual, &often) = tally
-        .iter()
-        .max_by_key(|&(width, times)| (times, width))
-        .unwrap_or((&0, &0));
+    let matching = |wanted: &dyn Fn(usize) -> usize| {
+        widths
+            .iter()
+            .enumerate()
+            .filter(|&(row, &width)| width == wanted(row))
+            .count()
+    };
+    let lower = matching(&|row| row + 1);
+    let upper = matching(&|row| rows - row);
+    let (_, often) = usual(widths);
     // A first row of one cell is how a lower triangle begins, and little else.
     if rows > 2 && widths[0] == 1 && lower >= often && lower >= upper {
         return (Box::new(|row| row + 1), "as the rows form a lower triangle");
@@ -93,12 +118,29 @@ fn wanted_width(widths: &[usize]) -> (Box<dyn Fn(usize) -> usize>, &'static str)
             "as the rows form an upper triangle",
         );
     }
+    usual_width(widths)
+}
+
+/// The width that most rows have, else that of the longest.
+fn usual_width(widths: &[usize]) -> WantedWidth {
+    let (usual, often) = usual(widths);
     if often > 1 {
-        (Box::new(move |_| usual), "as in most rows")
-    } else {
-        let widest = widths.iter().copied().max().unwrap_or(0);
-        (Box::new(move |_| widest), "as in the longest row")
+        return (Box::new(move |_| usual), "as in most rows");
     }
+    let widest = widths.iter().copied().max().unwrap_or(0);
+    (Box::new(move |_| widest), "as in the longest row")
+}
+
+/// The commonest width and how often it occurs.
+fn usual(widths: &[usize]) -> (usize, usize) {
+    let mut tally: BTreeMap<usize, usize> = BTreeMap::new();
+    for &width in widths {
+        *tally.entry(width).or_default() += 1;
+    }
+    tally
+        .into_iter()
+        .max_by_key(|&(width, times)| (times, width))
+        .unwrap_or((0, 0))
 }
 
 fn not_square(table: &RawTable, settings: &Settings, findings: &mut Findings) {

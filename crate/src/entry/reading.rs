@@ -340,7 +340,7 @@ fn misfit(
         .decimal
         .unwrap_or_else(|| decimal::possible(&stripped.table, source)[0]);
     let settings = resolved(&settings, labels, decimal, Shape::Full);
-    super::misfit::describe(&stripped.table, &settings, findings);
+    super::misfit::describe(&stripped.table, &settings, options, findings);
     Reading {
         settings,
         stripped,

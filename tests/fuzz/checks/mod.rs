@@ -4,7 +4,9 @@
 
 use eigenledger::entry::grid::{self, CellEdit, Mirror};
 use eigenledger::entry::repair;
-use eigenledger::entry::{read, Entry, Input, Layout, Limits, ReadOptions, Settings, Severity, Wanted};
+use eigenledger::entry::{
+    read, Entry, Input, Layout, Limits, ReadOptions, Settings, Severity, Wanted,
+};
 
 /// Small limits, so that the fuzzer reaches them.
 fn options(wanted: Wanted, settings: Settings) -> ReadOptions<'static> {
@@ -35,7 +37,10 @@ pub fn cell(data: &[u8]) {
     let Ok(text) = std::str::from_utf8(data) else {
         return;
     };
-    let given = [("k".to_owned(), "3/7".to_owned()), ("m".to_owned(), "2*k".to_owned())];
+    let given = [
+        ("k".to_owned(), "3/7".to_owned()),
+        ("m".to_owned(), "2*k".to_owned()),
+    ];
     let (parameters, _) = Parameters::read(&given, CellOptions::default());
     match parse_cell(text, &parameters, CellOptions::default()) {
         Ok(value) => {
@@ -49,7 +54,10 @@ pub fn cell(data: &[u8]) {
         Err(error) => {
             assert!(error.span.start <= error.span.end, "{text:?}: {error:?}");
             assert!(error.span.end <= text.len(), "{text:?}: {error:?}");
-            assert!(text.is_char_boundary(error.span.start), "{text:?}: {error:?}");
+            assert!(
+                text.is_char_boundary(error.span.start),
+                "{text:?}: {error:?}"
+            );
             assert!(text.is_char_boundary(error.span.end), "{text:?}: {error:?}");
         }
     }
@@ -80,7 +88,13 @@ pub fn matrix_market(data: &[u8]) {
 pub fn npy(data: &[u8]) {
     for bytes in [data.to_vec(), [b"\x93NUMPY", data].concat()] {
         let options = options(Wanted::Any, Settings::default());
-        let entry = read(Input::File { bytes: &bytes, name: "fuzz" }, &options);
+        let entry = read(
+            Input::File {
+                bytes: &bytes,
+                name: "fuzz",
+            },
+            &options,
+        );
         if let Some(text) = entry.text.clone() {
             consistent(&text, &entry, &options);
         }
@@ -92,7 +106,10 @@ fn framed(data: &[u8], before: &str, after: &str, layout: Layout) {
     let Ok(text) = std::str::from_utf8(data) else {
         return;
     };
-    let settings = Settings { layout: Some(layout), ..Settings::default() };
+    let settings = Settings {
+        layout: Some(layout),
+        ..Settings::default()
+    };
     for text in [text.to_owned(), [before, text, after].concat()] {
         check(&text, &options(Wanted::Square, settings));
     }
@@ -108,8 +125,15 @@ fn check(text: &str, options: &ReadOptions) {
         }
     }
     for choice in entry.question.iter().flat_map(|question| &question.choices) {
-        let chosen = ReadOptions { settings: choice.settings, limits: options.limits, ..ReadOptions::default() };
-        let chosen = ReadOptions { wanted: options.wanted, ..chosen };
+        let chosen = ReadOptions {
+            settings: choice.settings,
+            limits: options.limits,
+            ..ReadOptions::default()
+        };
+        let chosen = ReadOptions {
+            wanted: options.wanted,
+            ..chosen
+        };
         let taken = read(Input::Text(text), &chosen);
         assert_eq!(
             (taken.rows, taken.cols),
@@ -125,7 +149,10 @@ fn check(text: &str, options: &ReadOptions) {
 fn consistent(text: &str, entry: &Entry, options: &ReadOptions) {
     assert_eq!(entry.cells.len(), entry.rows * entry.cols, "{text:?}");
     let spans = entry.cells.iter().map(|cell| cell.span);
-    let said = entry.diagnostics.iter().filter_map(|diagnostic| diagnostic.span);
+    let said = entry
+        .diagnostics
+        .iter()
+        .filter_map(|diagnostic| diagnostic.span);
     for span in spans.chain(said) {
         let shown = text.get(span.start as usize..span.end as usize);
         let shown = shown.unwrap_or_else(|| panic!("{text:?}: {span:?}"));
@@ -135,10 +162,19 @@ fn consistent(text: &str, entry: &Entry, options: &ReadOptions) {
         assert_eq!(length, shown.encode_utf16().count(), "{text:?}: {span:?}");
     }
     if entry.is_usable() {
-        assert!(entry.cells.iter().all(|cell| cell.value.is_some()), "{text:?}");
-        assert!(entry.rows <= options.limits.order || options.wanted == Wanted::List, "{text:?}");
+        assert!(
+            entry.cells.iter().all(|cell| cell.value.is_some()),
+            "{text:?}"
+        );
+        assert!(
+            entry.rows <= options.limits.order || options.wanted == Wanted::List,
+            "{text:?}"
+        );
     } else {
-        let error = entry.diagnostics.iter().any(|said| said.severity == Severity::Error);
+        let error = entry
+            .diagnostics
+            .iter()
+            .any(|said| said.severity == Severity::Error);
         assert!(error, "{text:?} is refused without a word");
     }
 }
@@ -149,12 +185,27 @@ fn edits(text: &str, entry: &Entry, options: &ReadOptions) {
         return;
     }
     let (row, col) = (entry.rows / 2, entry.cols / 3);
-    let edit = CellEdit { row, col, text: "41".to_owned() };
+    let edit = CellEdit {
+        row,
+        col,
+        text: "41".to_owned(),
+    };
     let edited = grid::set_cell(text, entry, &edit, Mirror::Conjugate, options);
-    let again = ReadOptions { settings: edited.settings, limits: options.limits, ..ReadOptions::default() };
-    let again = ReadOptions { wanted: options.wanted, ..again };
+    let again = ReadOptions {
+        settings: edited.settings,
+        limits: options.limits,
+        ..ReadOptions::default()
+    };
+    let again = ReadOptions {
+        wanted: options.wanted,
+        ..again
+    };
     let read_back = read(Input::Text(&edited.text), &again);
     let value = read_back.cell(row, col).and_then(|cell| cell.value.clone());
     let holds = value.is_some_and(|value| value.re.nearest(0) == 41.0 && value.im.is_zero());
-    assert!(holds, "{text:?} became {:?}: {:?}", edited.text, read_back.diagnostics);
+    assert!(
+        holds,
+        "{text:?} became {:?}: {:?}",
+        edited.text, read_back.diagnostics
+    );
 }
