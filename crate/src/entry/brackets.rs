@@ -30,7 +30,7 @@ pub(crate) fn inside(source: &str) -> Option<(usize, usize)> {
         return None;
     }
     let (first, last) = clean::trim(&source[start + open + 1..close]);
-    let (first, last) = (start + open + 1 + first, start + open + 1 + last);
+    let (mut first, mut last) = (start + open + 1 + first, start + open + 1 + last);
     let inner = &source[first..last];
     let nested = inner.starts_with(['[', '{', '(']);
     if body[open..].starts_with('(') {
@@ -46,27 +46,38 @@ pub(crate) fn inside(source: &str) -> Option<(usize, usize)> {
         if !word.trim().is_empty() {
             let inner_close = matching(source, first, last)?;
             let (from, to) = clean::trim(&source[first + 1..inner_close]);
-            return Some((first + 1 + from, first + 1 + to));
+            (first, last) = (first + 1 + from, first + 1 + to);
         }
     }
-    Some((first, last))
+    // Cells beside rows belong to none of them.
+    let nested = source[first..last].starts_with(['[', '{']);
+    let rows = !nested || are_groups(source, first, last, |_| true);
+    rows.then_some((first, last))
 }
 
-/// Whether the text is groups in parentheses with nothing but commas between,
-/// each with a comma inside.
+/// Whether the text is groups in parentheses with nothing but separators
+/// between, each with a comma inside.
 fn rows_of_parentheses(source: &str, first: usize, last: usize) -> bool {
+    are_groups(source, first, last, |group| {
+        group.starts_with('(') && group.contains(',')
+    })
+}
+
+/// Whether the text is groups in brackets, each of which is `fit`, with nothing
+/// but separators between.
+fn are_groups(source: &str, first: usize, last: usize, fit: impl Fn(&str) -> bool) -> bool {
     let mut at = first;
     while at < last {
-        if !source[at..last].starts_with('(') {
-            return false;
-        }
-        let Some(close) = matching(source, at, last) else {
-            return false;
+        let begins = source[at..last].starts_with(['[', '{', '(']);
+        let close = if begins {
+            matching(source, at, last)
+        } else {
+            None
         };
-        if !source[at..close].contains(',') {
-            return false;
+        match close {
+            Some(close) if fit(&source[at..close]) => at = skip_between(source, close + 1, last),
+            _ => return false,
         }
-        at = skip_between(source, close + 1, last);
     }
     true
 }
@@ -106,18 +117,9 @@ pub(crate) fn read(source: &str, signed: SignedWords, mut table: RawTable) -> Ra
     let mut at = start;
     if source[start..end].starts_with(['[', '{']) || rows_of_parentheses(source, start, end) {
         while at < end {
-            if source[at..end].starts_with(['[', '{', '(']) {
-                let close = matching(source, at, end).unwrap_or(end);
-                row(source, at + 1, close, signed, &mut table);
-                at = skip_between(source, (close + 1).min(end), end);
-            } else {
-                // Cells outside any row: a row of their own, to be seen as ragged.
-                let next = source[at..end]
-                    .find(['[', '{'])
-                    .map_or(end, |offset| at + offset);
-                row(source, at, next, signed, &mut table);
-                at = next;
-            }
+            let close = matching(source, at, end).unwrap_or(end);
+            row(source, (at + 1).min(close), close, signed, &mut table);
+            at = skip_between(source, (close + 1).min(end), end);
         }
         return table;
     }
