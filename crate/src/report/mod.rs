@@ -5,10 +5,17 @@
 //! the few plain doubles beside them place things in pictures and are never
 //! printed.
 
+pub mod claims;
 pub mod decimal;
 pub mod exact_view;
 pub mod export;
 pub mod map;
+pub mod proof_view;
+pub mod residual;
+pub mod run;
+pub mod sheet;
+pub mod solution;
 pub mod spectrum;
+pub mod values;
 pub mod vector;
 pub mod working;
