@@ -15,8 +15,8 @@ fn solved(matrix: &str, metric: Option<&str>) -> (Assembly, Approximation, i32) 
     };
     let assembly = problem(&document).unwrap_or_else(|e| panic!("{matrix}: {e}"));
     let rounded = assembly.problem.rounded();
-    let solution = solve(&rounded, &mut Silent, &mut Unattended)
-        .unwrap_or_else(|e| panic!("{matrix}: {e}"));
+    let solution =
+        solve(&rounded, &mut Silent, &mut Unattended).unwrap_or_else(|e| panic!("{matrix}: {e}"));
     (assembly, solution.approximation, rounded.metric_scale)
 }
 
