@@ -59,7 +59,8 @@ mod tests {
 
     #[test]
     fn norms_survive_the_ends_of_the_range() {
-        for unit in [f64::MAX / 8.0, 1e300, 1.0, 1e-300, 5e-324] {
+        for exponent in [1020, 1000, 0, -1000, -1022] {
+            let unit = power_of_two(exponent);
             // 3-4-5 and 2-3-6-7 triangles: exact in every scale that has room for them.
             assert_eq!(length(3.0 * unit, -4.0 * unit), 5.0 * unit, "unit {unit:e}");
             assert_eq!(
@@ -68,6 +69,7 @@ mod tests {
                 "unit {unit:e}"
             );
         }
+        assert_eq!(norm2([3.0 * 5e-324, 4.0 * 5e-324].iter()), 5.0 * 5e-324);
         assert_eq!(norm2([].iter()), 0.0);
         assert!(norm2([1.0, f64::NAN].iter()).is_nan());
         assert_eq!(norm2([1.0, f64::INFINITY].iter()), f64::INFINITY);

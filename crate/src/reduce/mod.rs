@@ -17,8 +17,8 @@ mod tests;
 
 pub(crate) use metric::solve_adjoint;
 pub use metric::{cholesky, CholeskyError};
-pub(crate) use run::dot;
 pub use run::ReductionRun;
+pub(crate) use run::{dot, Checkpoint};
 
 use crate::control::{Control, Flow, Stage};
 use crate::ledger::{Basis, Event, Listening, Recorder, Totals};
@@ -371,8 +371,7 @@ impl Gauge {
         if self.listening == Listening::No {
             return Totals::default();
         }
-        let trace = run.trace();
-        let band = run.band_norm();
+        let (trace, band) = run.band();
         let near_end = run.columns_done() + MEASURED_TAIL >= run.order();
         let measured = near_end || self.readings.is_multiple_of(MEASURED_EVERY);
         self.readings += 1;
@@ -402,9 +401,10 @@ impl Totals {
     pub(crate) fn of_matrix(matrix: &Dense) -> Self {
         let run = ReductionRun::new(matrix);
         let balance = run.norm_outside_band();
+        let (trace, band) = run.band();
         Self {
-            trace: run.trace(),
-            frobenius: length(run.band_norm(), balance),
+            trace,
+            frobenius: length(band, balance),
             balance,
             basis: Basis::Measured,
         }
