@@ -246,7 +246,12 @@ fn pack(
         packed.clear();
         return;
     }
-    packed.resize(across.len().div_ceil(TILE) * TILE * depth, 0.0);
+    let length = across.len().div_ceil(TILE) * TILE * depth;
+    if packed.capacity() < length {
+        // Every number is written below: what was there need not be copied.
+        *packed = vec![0.0; length];
+    }
+    packed.resize(length, 0.0);
     for (strip, packed) in packed.chunks_exact_mut(TILE * depth).enumerate() {
         let first = across.start + strip * TILE;
         let present = TILE.min(across.end - first);

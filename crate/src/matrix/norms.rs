@@ -13,6 +13,15 @@ pub(crate) const fn power_of_two(exponent: i32) -> f64 {
     f64::from_bits(((exponent + 1023) as u64) << 52)
 }
 
+/// Largest modulus; NaN counts as nothing. (`f64::max` would be a call into a
+/// library on wasm, for its rules on NaN.)
+pub(crate) fn largest<'a>(values: impl Iterator<Item = &'a f64>) -> f64 {
+    values.fold(
+        0.0,
+        |largest, x| if x.abs() > largest { x.abs() } else { largest },
+    )
+}
+
 /// √Σx² over all values given, summed in the order given. Relative error at
 /// most (count/2 + 2)·u. Infinite or NaN input gives infinity or NaN.
 pub fn norm2<'a>(values: impl Iterator<Item = &'a f64> + Clone) -> f64 {
@@ -20,9 +29,7 @@ pub fn norm2<'a>(values: impl Iterator<Item = &'a f64> + Clone) -> f64 {
     if (SMALLEST_SAFE_SQUARE..=LARGEST_SAFE_SQUARE).contains(&squares) {
         return squares.sqrt();
     }
-    let largest = values
-        .clone()
-        .fold(0.0_f64, |largest, x| largest.max(x.abs()));
+    let largest = largest(values.clone());
     if largest == 0.0 || !largest.is_finite() {
         return largest + squares;
     }

@@ -49,12 +49,9 @@ impl Tridiagonal {
             k.and_then(|k| self.off_diagonal.get(k))
                 .map_or(0.0, |e| e.abs())
         };
-        self.diagonal
-            .iter()
-            .enumerate()
-            .fold(0.0, |norm: f64, (k, d)| {
-                norm.max(off(k.checked_sub(1)) + d.abs() + off(Some(k)))
-            })
+        let sums = self.diagonal.iter().enumerate();
+        let sums = sums.map(|(k, d)| off(k.checked_sub(1)) + d.abs() + off(Some(k)));
+        sums.fold(0.0, |norm, sum| if sum > norm { sum } else { norm })
     }
 }
 
@@ -277,7 +274,9 @@ fn check(rounded: &Rounded) -> Result<usize, ReduceError> {
                         col: at / order,
                     });
                 }
-                largest = largest.max(x.abs());
+                if x.abs() > largest {
+                    largest = x.abs();
+                }
             }
         }
         if largest != 0.0 && !SCALED.contains(&largest) {

@@ -6,6 +6,7 @@
 
 use super::pass::{self, updated, updated_complex, Planes, Split};
 use super::reflector::{self, Formed};
+use crate::matrix::lanes::Lanes;
 use crate::matrix::norms::{norm2, power_of_two};
 use crate::matrix::Dense;
 use nalgebra::DMatrix;
@@ -461,19 +462,22 @@ pub(crate) struct LastReflector<'a> {
     pub image: (f64, f64),
 }
 
-/// Inner product in four interleaved sums, so that it vectorises in a fixed order.
+/// Inner product in four interleaved sums, added in a fixed order.
 pub(crate) fn dot(x: &[f64], y: &[f64]) -> f64 {
-    let (x_fours, x_rest) = x.as_chunks::<4>();
-    let (y_fours, y_rest) = y.as_chunks::<4>();
-    let mut sums = [0.0; 4];
+    let ((x_pairs, x_rest), (y_pairs, y_rest)) = (x.as_chunks::<2>(), y.as_chunks::<2>());
+    let ((x_fours, x_two), (y_fours, y_two)) = (x_pairs.as_chunks::<2>(), y_pairs.as_chunks::<2>());
+    let mut even = Lanes::splat(0.0);
+    let mut odd = Lanes::splat(0.0);
     for (x, y) in x_fours.iter().zip(y_fours) {
-        for lane in 0..4 {
-            sums[lane] += x[lane] * y[lane];
-        }
+        even = even + Lanes::load(&x[0]) * Lanes::load(&y[0]);
+        odd = odd + Lanes::load(&x[1]) * Lanes::load(&y[1]);
     }
-    let rest: f64 = x_rest
+    if let ([x], [y]) = (x_two, y_two) {
+        even = even + Lanes::load(x) * Lanes::load(y);
+    }
+    let rest = x_rest
         .iter()
         .zip(y_rest)
         .fold(0.0, |sum, (x, y)| sum + x * y);
-    ((sums[0] + sums[2]) + (sums[1] + sums[3])) + rest
+    (even + odd).sum() + rest
 }
