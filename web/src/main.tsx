@@ -2,6 +2,7 @@
 import './view/style/base.css';
 import './view/style/sheet.css';
 import './view/style/problem.css';
+import './view/style/results.css';
 import './view/style/print.css';
 
 import { render } from 'preact';
@@ -10,6 +11,7 @@ import { openFirstExample } from './shared/examples';
 import { followDrops } from './shared/drops';
 import { followLinks, openLink } from './shared/link';
 import { followDocument } from './shared/pipeline';
+import { followSolutions } from './shared/proof';
 import { keepDocument, lastProblem } from './shared/storage';
 import { replaceDocument, reportTrouble, work } from './shared/store';
 import { installOffline } from './shared/offline';
@@ -37,6 +39,7 @@ async function start(): Promise<void> {
   }
   keepDocument();
   followDocument();
+  followSolutions();
   installOffline();
 }
 

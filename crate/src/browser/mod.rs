@@ -11,6 +11,7 @@ mod edit;
 mod open;
 mod read;
 pub mod reading;
+mod results;
 
 use tsify::Ts;
 use wasm_bindgen::prelude::*;
@@ -26,6 +27,8 @@ use reading::{GridEdit, Opened, Reading, TextChange, Which};
 pub struct Workbench {
     /// The problem last read, if it can be solved.
     ready: Option<Ready>,
+    /// What came of solving it.
+    run: Option<crate::report::run::Run>,
 }
 
 #[wasm_bindgen]

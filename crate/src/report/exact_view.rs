@@ -5,11 +5,11 @@ use dashu_ratio::RBig;
 use serde::{Deserialize, Serialize};
 
 use super::decimal::typeset;
-use crate::exact::ExactSpectrum;
+use crate::exact::{ExactError, ExactSpectrum};
 
 /// The exact results.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "camelCase")]
 pub struct ExactView {
     /// Diagonal of the tridiagonal form.
@@ -26,9 +26,58 @@ pub struct ExactView {
     pub growth: String,
 }
 
+/// What came of taking the exact road.
+#[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
+#[serde(
+    tag = "outcome",
+    rename_all = "camelCase",
+    rename_all_fields = "camelCase"
+)]
+pub enum ExactAnswer {
+    /// It was open.
+    Found {
+        /// The exact results.
+        view: ExactView,
+    },
+    /// It was closed.
+    Closed {
+        /// Why, as a sentence.
+        reason: String,
+        /// Whether asking again beyond the default order would open it.
+        may_be_raised: bool,
+    },
+}
+
+/// The answer for a spectrum or the error that stood in its place.
+pub fn answer(outcome: Result<&ExactSpectrum, &ExactError>) -> ExactAnswer {
+    match outcome {
+        Ok(spectrum) => ExactAnswer::Found {
+            view: view(spectrum),
+        },
+        Err(error) => ExactAnswer::Closed {
+            reason: sentence(&error.to_string()),
+            may_be_raised: matches!(error, ExactError::OrderTooLarge { .. }),
+        },
+    }
+}
+
+/// With a capital and a full stop.
+fn sentence(text: &str) -> String {
+    let mut characters = text.chars();
+    match characters.next() {
+        Some(first) => format!(
+            "{}{}.",
+            first.to_uppercase(),
+            characters.as_str().trim_end_matches('.')
+        ),
+        None => String::new(),
+    }
+}
+
 /// One term of the characteristic polynomial.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct PolynomialTerm {
     /// `+` or `−`; empty before a leading term that is positive.
     pub sign: String,
@@ -40,7 +89,7 @@ pub struct PolynomialTerm {
 
 /// One exact eigenvalue.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct ExactEigenvalueView {
     /// Index of its first copy, from 1.
     pub first: u32,

@@ -12,7 +12,7 @@ const LARGEST_SIDE: usize = 160;
 /// Magnitudes of a matrix for drawing. A large matrix is gathered into square
 /// blocks, each standing for its largest entry.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "camelCase")]
 pub struct MagnitudePicture {
     /// Cells a side.

@@ -45,11 +45,7 @@ const UNIT_RANGE: std::ops::RangeInclusive<i32> = -6000..=4200;
 
 /// How the page asks for another window.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(
-    target_arch = "wasm32",
-    derive(tsify::Tsify),
-    tsify(into_wasm_abi, from_wasm_abi)
-)]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(tag = "move", rename_all = "camelCase")]
 pub enum WindowMove {
     /// The whole spectrum.
@@ -77,11 +73,7 @@ pub enum WindowMove {
 
 /// A tick of the axis.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(
-    target_arch = "wasm32",
-    derive(tsify::Tsify),
-    tsify(into_wasm_abi, from_wasm_abi)
-)]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct Tick {
     /// Position, −1 to 1.
     pub at: f64,
@@ -91,11 +83,7 @@ pub struct Tick {
 
 /// A line of the spectrum in the window.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(
-    target_arch = "wasm32",
-    derive(tsify::Tsify),
-    tsify(into_wasm_abi, from_wasm_abi)
-)]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct SpectrumMark {
     /// Place in the list of lines, from 0.
     pub line: u32,
@@ -115,13 +103,19 @@ pub struct SpectrumMark {
     pub stacked: u32,
 }
 
+/// Which eigenvalues a line stands for.
+#[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
+pub struct LineRange {
+    /// Index of the first, from 1.
+    pub first: u32,
+    /// Index of the last.
+    pub last: u32,
+}
+
 /// The spectrum through a window.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(
-    target_arch = "wasm32",
-    derive(tsify::Tsify),
-    tsify(into_wasm_abi, from_wasm_abi)
-)]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "camelCase")]
 pub struct SpectrumView {
     /// To hand back with the next move.
@@ -134,6 +128,8 @@ pub struct SpectrumView {
     pub step: String,
     /// Width of the window.
     pub width: String,
+    /// Index ranges of all lines, ascending, seen or not.
+    pub lines: Vec<LineRange>,
     /// What can be seen.
     pub marks: Vec<SpectrumMark>,
     /// Eigenvalues to the left of the window, with multiplicity.
@@ -344,6 +340,13 @@ pub fn view(window: &Window, lines: &[Line]) -> SpectrumView {
             2,
             Rounding::Nearest,
         ),
+        lines: lines
+            .iter()
+            .map(|line| LineRange {
+                first: line.first,
+                last: line.last,
+            })
+            .collect(),
         marks,
         left_of,
         right_of,

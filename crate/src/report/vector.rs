@@ -8,7 +8,7 @@ use crate::matrix::Dense;
 
 /// One component of a vector.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct VectorComponent {
     /// The row's label, or its number.
     pub label: String,
@@ -23,7 +23,7 @@ pub struct VectorComponent {
 
 /// One eigenvector.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct VectorView {
     /// Index of its eigenvalue, from 1.
     pub index: u32,
@@ -78,7 +78,7 @@ pub fn components(
 }
 
 /// x to `decimals` places.
-fn figure(x: f64, decimals: u32) -> String {
+pub fn figure(x: f64, decimals: u32) -> String {
     let x = decimal::exact(x, 0).unwrap_or(RBig::ZERO);
     decimal::typeset(&decimal::to_place(
         &x,

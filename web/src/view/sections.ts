@@ -1,7 +1,11 @@
 /** The sections of the sheet, in the order of the work. */
 import type { ComponentType } from 'preact';
 
+import { Eigenpairs } from './eigenpairs/eigenpairs';
 import { Problem } from './problem/problem';
+import { Proof } from './proof/proof';
+import { Sheet } from './sheet/sheet';
+import { Working } from './working/working';
 
 export interface SectionEntry {
   readonly id: string;
@@ -13,4 +17,8 @@ export interface SectionEntry {
 
 export const sections: readonly SectionEntry[] = [
   { id: 'problem', heading: 'Problem', component: Problem, derived: false },
+  { id: 'working', heading: 'Working', component: Working, derived: true },
+  { id: 'eigenpairs', heading: 'Eigenpairs', component: Eigenpairs, derived: true },
+  { id: 'proof', heading: 'Proof', component: Proof, derived: true },
+  { id: 'sheet', heading: 'Sheet', component: Sheet, derived: true },
 ];

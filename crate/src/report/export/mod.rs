@@ -11,6 +11,8 @@ mod matrix_market;
 use serde::{Deserialize, Serialize};
 
 use crate::pairs::Approximation;
+use crate::report::run::Run;
+use crate::report::values;
 
 /// What an export draws on.
 #[derive(Clone, Copy, Debug)]
@@ -49,11 +51,7 @@ pub struct ProvenEnds {
 
 /// What to write.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(
-    target_arch = "wasm32",
-    derive(tsify::Tsify),
-    tsify(into_wasm_abi, from_wasm_abi)
-)]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "kebab-case")]
 pub enum ExportKind {
     /// Values with residual bounds and, if proven, their ends: CSV.
@@ -74,7 +72,7 @@ pub enum ExportKind {
 
 /// A file to download.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "camelCase")]
 pub struct FileText {
     /// A name for it, made from the title.
@@ -83,6 +81,23 @@ pub struct FileText {
     pub media_type: String,
     /// What is in it.
     pub text: String,
+}
+
+/// Writes one file of a run; `None` when the run has no result.
+pub fn of_run(run: &Run, kind: ExportKind) -> Option<FileText> {
+    let solution = run.outcome.as_ref().ok()?;
+    let form = &solution.reduction.tridiagonal;
+    let data = Data {
+        title: run.heading.title.trim(),
+        labels: &run.heading.labels,
+        approximation: &solution.approximation,
+        residual_bounds: &[],
+        tridiagonal: Some((&form.diagonal, &form.off_diagonal)),
+        tridiagonal_scale: run.scale(),
+        enclosures: &values::proven_ends(run),
+        fingerprint: &run.fingerprint,
+    };
+    Some(export(&data, kind))
 }
 
 /// Writes one file.

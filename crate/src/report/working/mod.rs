@@ -1,13 +1,25 @@
 //! The ledger as the page shows it: rows, the state at an entry, the history
 //! of the off-diagonals.
 
+mod entry;
+mod history;
+mod rows;
+mod state;
+
+#[cfg(test)]
+mod tests;
+
+pub use entry::entry;
+pub use history::history;
+pub use rows::{page, summary};
+
 use serde::{Deserialize, Serialize};
 
 use super::map::MagnitudePicture;
 
 /// What an entry records.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "lowercase")]
 pub enum EntryKind {
     /// A change to the input.
@@ -26,7 +38,8 @@ pub enum EntryKind {
 
 /// One row of the ledger.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
+#[serde(rename_all = "camelCase")]
 pub struct LedgerRow {
     /// Number of the entry, from 1.
     pub number: u32,
@@ -44,7 +57,7 @@ pub struct LedgerRow {
 
 /// Some consecutive rows.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct LedgerPage {
     /// Place of the first row, from 0.
     pub first: u32,
@@ -54,7 +67,7 @@ pub struct LedgerPage {
 
 /// The ledger at a glance.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "camelCase")]
 pub struct LedgerSummary {
     /// Entries in all.
@@ -73,7 +86,7 @@ pub struct LedgerSummary {
 
 /// A name and its figure.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct Fact {
     /// What it is.
     pub name: String,
@@ -83,7 +96,7 @@ pub struct Fact {
 
 /// One off-diagonal before and after a sweep.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct OffDiagonalChange {
     /// Its place, from 1.
     pub place: u32,
@@ -95,7 +108,7 @@ pub struct OffDiagonalChange {
 
 /// How a cell of a state is to be read.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "lowercase")]
 pub enum CellRole {
     /// An entry like any other.
@@ -110,7 +123,7 @@ pub enum CellRole {
 
 /// One cell of a state.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct StateCell {
     /// The number.
     pub figure: String,
@@ -120,7 +133,7 @@ pub struct StateCell {
 
 /// The matrix after an entry: in numbers or as a map.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct StateView {
     /// What it is a state of, and its power of two, in words.
     pub caption: String,
@@ -132,7 +145,7 @@ pub struct StateView {
 
 /// An entry in full.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "camelCase")]
 pub struct EntryView {
     /// The row of the list.
@@ -153,7 +166,7 @@ pub struct EntryView {
 
 /// A tick of a logarithmic axis.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct DecadeTick {
     /// Height, 0 at the foot and 1 at the head.
     pub at: f32,
@@ -163,7 +176,7 @@ pub struct DecadeTick {
 
 /// One off-diagonal through all sweeps.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct HistoryLine {
     /// Its place in the tridiagonal form, from 1.
     pub place: u32,
@@ -173,7 +186,7 @@ pub struct HistoryLine {
 
 /// A deflation on the history.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct HistoryDeflation {
     /// Entry of the ledger, from 0.
     pub entry: u32,
@@ -187,7 +200,7 @@ pub struct HistoryDeflation {
 
 /// The off-diagonals falling sweep by sweep.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify), tsify(into_wasm_abi))]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 pub struct HistoryView {
     /// Sweeps in all.
     pub sweeps: u32,

@@ -1,0 +1,226 @@
+/**
+ * The spectrum on a line that can be panned and zoomed down to the width of an
+ * enclosure of hundreds of digits. Rust owns the window and the axis; here is
+ * only where the ink goes.
+ */
+import { useEffect, useRef, useState } from 'preact/hooks';
+
+import type { SpectrumMark, SpectrumView, WindowMove } from '../../shared/generated/eigenledger';
+import { figuresKey } from '../../shared/proof';
+import { chosenEigenvalue, digits } from '../../shared/store';
+import { useRemote } from '../parts/remote';
+
+const WIDTH = 1000;
+const HEIGHT = 128;
+const AXIS_Y = 92;
+const MARK_HEIGHT = 34;
+const STACK_STEP = 9;
+const MOST_STACKED = 6;
+/** Narrower enclosures are drawn as a single stroke, in view units. */
+const NARROWEST_BAR = 3;
+const ZOOM_STEP = 0.5;
+
+function x(at: number): number {
+  return ((at + 1) / 2) * WIDTH;
+}
+
+function MarkShape({ mark, chosen }: { mark: SpectrumMark; chosen: boolean }) {
+  const count = mark.last - mark.first + 1;
+  const lift = Math.min(mark.stacked, MOST_STACKED) * STACK_STEP;
+  const top = AXIS_Y - MARK_HEIGHT - lift;
+  const proven = mark.lower !== undefined && mark.upper !== undefined;
+  const left = x(mark.lower ?? mark.at);
+  const right = x(mark.upper ?? mark.at);
+  const wide = right - left > NARROWEST_BAR;
+  return (
+    <g class={`spectrum-mark ${proven ? 'enclosed' : ''} ${chosen ? 'chosen' : ''}`}>
+      <rect class="reach" x={Math.min(left, x(mark.at) - 5)} y={top - 4} width={Math.max(right - left, 10)} height={MARK_HEIGHT + lift + 8} />
+      {proven && wide && (
+        <>
+          <rect class="enclosure" x={left} y={top + 6} width={right - left} height={AXIS_Y - top - 6} />
+          <path class="ends" d={`M${String(left + 5)} ${String(top + 6)}H${String(left)}V${String(AXIS_Y)}M${String(right - 5)} ${String(top + 6)}H${String(right)}V${String(AXIS_Y)}`} />
+        </>
+      )}
+      {mark.stacked === 0 ? (
+        <line class="stem" x1={x(mark.at)} x2={x(mark.at)} y1={top + 6} y2={AXIS_Y} />
+      ) : null}
+      {mark.stacked <= MOST_STACKED && <circle cx={x(mark.at)} cy={top + 6} r={count > 1 ? 5 : 3.6} />}
+      {count > 1 && (
+        <text class="count" x={x(mark.at)} y={top - 6} text-anchor="middle">
+          ×{count}
+        </text>
+      )}
+    </g>
+  );
+}
+
+function Axis({ view }: { view: SpectrumView }) {
+  return (
+    <g class="axis" aria-hidden="true">
+      <line x1={0} x2={WIDTH} y1={AXIS_Y} y2={AXIS_Y} />
+      {view.ticks.map((tick) => (
+        <g key={tick.label}>
+          <line x1={x(tick.at)} x2={x(tick.at)} y1={AXIS_Y} y2={AXIS_Y + 6} />
+          <text x={x(tick.at)} y={AXIS_Y + 22} text-anchor="middle">
+            {view.prefix === '' ? tick.label : `…${tick.label}`}
+          </text>
+        </g>
+      ))}
+      {view.leftOf > 0 && (
+        <text class="beyond" x={4} y={16}>
+          ◂ {view.leftOf}
+        </text>
+      )}
+      {view.rightOf > 0 && (
+        <text class="beyond" x={WIDTH - 4} y={16} text-anchor="end">
+          {view.rightOf} ▸
+        </text>
+      )}
+    </g>
+  );
+}
+
+function alternative(view: SpectrumView, label: string): string {
+  const seen = view.marks.length === 1 ? '1 mark' : `${String(view.marks.length)} marks`;
+  return `${label}: ${seen} in a window ${view.width} wide; ${String(view.leftOf)} eigenvalues to the left of it, ${String(view.rightOf)} to the right.`;
+}
+
+interface Asked {
+  readonly turn: number;
+  readonly move: WindowMove;
+}
+
+/** The line. `start` says what it opens on. */
+export function SpectrumLine({ label, start }: { label: string; start: WindowMove }) {
+  const [asked, setAsked] = useState<Asked>({ turn: 0, move: start });
+  const shown = useRef<string | undefined>(undefined);
+  const answered = useRef(-1);
+  const drag = useRef<{ at: number; moved: boolean } | null>(null);
+  const picture = useRef<SVGSVGElement>(null);
+  const key = figuresKey.value;
+  const view = useRemote(
+    key === null ? null : `${key} ${String(digits.value)} ${String(asked.turn)}`,
+    async (bench) => {
+      const limit = digits.value === 'proven' ? 0 : digits.value;
+      // A move is made once; asked again after a proof, the window stays.
+      const move: WindowMove = answered.current === asked.turn ? { move: 'stay' } : asked.move;
+      const seen = await bench.spectrum(shown.current, move, limit);
+      if (seen !== undefined) {
+        shown.current = seen.window;
+        answered.current = asked.turn;
+      }
+      return seen;
+    },
+  );
+  const ask = (move: WindowMove) => { setAsked(({ turn }) => ({ turn: turn + 1, move })); };
+  const askLatest = useRef(ask);
+  askLatest.current = ask;
+
+  // A wheel listener of our own, since only one that is not passive may keep
+  // the page from scrolling; it does so only while the line has the focus.
+  const present = view !== undefined;
+  useEffect(() => {
+    const svg = picture.current;
+    if (svg === null) return undefined;
+    const turnWheel = (event: WheelEvent) => {
+      if (document.activeElement !== svg && !event.ctrlKey) return;
+      event.preventDefault();
+      const box = svg.getBoundingClientRect();
+      const about = ((event.clientX - box.left) / box.width) * 2 - 1;
+      askLatest.current({ move: 'zoom', factor: event.deltaY > 0 ? 1 / 0.8 : 0.8, about });
+    };
+    svg.addEventListener('wheel', turnWheel, { passive: false });
+    return () => { svg.removeEventListener('wheel', turnWheel); };
+  }, [present]);
+
+  if (view === undefined) return null;
+  const chosen = chosenEigenvalue.value ?? 0;
+  const isChosen = (mark: SpectrumMark) => chosen + 1 >= mark.first && chosen + 1 <= mark.last;
+  const chosenLine = view.lines.findIndex((line) => chosen + 1 >= line.first && chosen + 1 <= line.last);
+  const choose = (line: number) => {
+    const next = view.lines[line];
+    if (next !== undefined) chosenEigenvalue.value = next.first - 1;
+  };
+  const lens = () => { ask({ move: 'lens', line: Math.max(0, chosenLine) }); };
+
+  const pressed = (event: KeyboardEvent) => {
+    const act: Record<string, () => void> = {
+      ArrowLeft: () => { ask({ move: 'pan', by: -0.25 }); },
+      ArrowRight: () => { ask({ move: 'pan', by: 0.25 }); },
+      '+': () => { ask({ move: 'zoom', factor: ZOOM_STEP, about: 0 }); },
+      '=': () => { ask({ move: 'zoom', factor: ZOOM_STEP, about: 0 }); },
+      '-': () => { ask({ move: 'zoom', factor: 1 / ZOOM_STEP, about: 0 }); },
+      '0': () => { ask({ move: 'all' }); },
+      Enter: lens,
+      '[': () => { choose(chosenLine - 1); },
+      ']': () => { choose(chosenLine + 1); },
+    };
+    const found = act[event.key];
+    if (found === undefined || event.ctrlKey || event.metaKey || event.altKey) return;
+    event.preventDefault();
+    found();
+  };
+  const pointed = (event: PointerEvent) => {
+    const svg = picture.current;
+    if (svg === null) return;
+    svg.focus();
+    svg.setPointerCapture(event.pointerId);
+    drag.current = { at: event.clientX, moved: false };
+  };
+  const dragged = (event: PointerEvent) => {
+    const svg = picture.current;
+    if (svg === null || drag.current === null) return;
+    const by = ((drag.current.at - event.clientX) / svg.getBoundingClientRect().width) * 2;
+    if (Math.abs(by) < 0.01) return;
+    drag.current = { at: event.clientX, moved: true };
+    ask({ move: 'pan', by });
+  };
+  const released = (event: PointerEvent) => {
+    const svg = picture.current;
+    const began = drag.current;
+    drag.current = null;
+    if (svg === null || began === null || began.moved) return;
+    const box = svg.getBoundingClientRect();
+    const at = ((event.clientX - box.left) / box.width) * 2 - 1;
+    let nearest: SpectrumMark | undefined;
+    for (const mark of view.marks) {
+      if (nearest === undefined || Math.abs(mark.at - at) < Math.abs(nearest.at - at)) nearest = mark;
+    }
+    if (nearest !== undefined) chosenEigenvalue.value = nearest.first - 1;
+  };
+  return (
+    <figure class="spectrum">
+      <svg
+        ref={picture}
+        viewBox={`0 0 ${String(WIDTH)} ${String(HEIGHT)}`}
+        role="img"
+        tabIndex={0}
+        aria-label={alternative(view, label)}
+        onKeyDown={pressed}
+        onPointerDown={pointed}
+        onPointerMove={dragged}
+        onPointerUp={released}
+      >
+        <Axis view={view} />
+        {view.marks.map((mark) => (
+          <MarkShape key={mark.line} mark={mark} chosen={isChosen(mark)} />
+        ))}
+      </svg>
+      <figcaption>
+        <span class="soft">
+          {view.prefix === '' ? '' : <>… stands for <span class="digits">{view.prefix}</span>; </>}
+          one division is <span class="digits">{view.step}</span>
+        </span>
+        <span class="row screen-only">
+          <button type="button" class="quiet" onClick={() => { ask({ move: 'all' }); }}>whole</button>
+          <button type="button" class="quiet" aria-label="zoom in" onClick={() => { ask({ move: 'zoom', factor: ZOOM_STEP, about: 0 }); }}>closer</button>
+          <button type="button" class="quiet" aria-label="zoom out" onClick={() => { ask({ move: 'zoom', factor: 1 / ZOOM_STEP, about: 0 }); }}>wider</button>
+          <button type="button" class="quiet" onClick={lens}>to the width of the chosen one</button>
+        </span>
+        <span class="soft keys screen-only">
+          <kbd>←</kbd> <kbd>→</kbd> move, <kbd>+</kbd> <kbd>−</kbd> zoom, <kbd>0</kbd> whole, <kbd>[</kbd> <kbd>]</kbd> neighbour, <kbd>Enter</kbd> to its width
+        </span>
+      </figcaption>
+    </figure>
+  );
+}
