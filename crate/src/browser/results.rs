@@ -15,9 +15,10 @@ use crate::report::exact_view::{self, ExactAnswer};
 use crate::report::export::{self, ExportKind, FileText};
 use crate::report::proof_view::{self, ProofView};
 use crate::report::run::{Heading, Run};
+use crate::report::sheet;
 use crate::report::solution::{self, Solution};
 use crate::report::spectrum::{self, SpectrumView, Window, WindowMove};
-use crate::report::values::{self, Settled, ValueTable};
+use crate::report::values::{self, Checks, Settled, ValueTable};
 use crate::report::vector::VectorView;
 use crate::report::working::{self, EntryView, HistoryView, LedgerPage};
 
@@ -221,6 +222,18 @@ impl Workbench {
         let view = exact_view::answer(outcome.as_ref());
         run.exact = outcome.ok();
         answer(Some(view))
+    }
+
+    /// How good the whole set is.
+    pub fn checks(&self) -> Answer<Checks> {
+        answer(self.run.as_ref().map(|run| Checks {
+            facts: values::checks(run),
+        }))
+    }
+
+    /// The residual report.
+    pub fn report(&self) -> Answer<FileText> {
+        answer(self.run.as_ref().map(sheet::report))
     }
 
     /// A data file.

@@ -86,25 +86,42 @@ pub fn quality(rounded: &Rounded, approximation: &Approximation) -> Quality {
         }
         frobenius(&difference(&rounded.matrix, &back)) / (unit * size)
     });
-    Quality { backward, orthogonality: frobenius(&defect) / unit }
+    Quality {
+        backward,
+        orthogonality: frobenius(&defect) / unit,
+    }
 }
 
 fn frobenius(matrix: &Dense) -> f64 {
-    norm2(matrix.re.iter().chain(matrix.im.iter().flat_map(DMatrix::iter)))
+    norm2(
+        matrix
+            .re
+            .iter()
+            .chain(matrix.im.iter().flat_map(DMatrix::iter)),
+    )
 }
 
 fn column(matrix: &Dense, k: usize) -> Vec<f64> {
     let planes = std::iter::once(&matrix.re).chain(&matrix.im);
-    planes.flat_map(|plane| plane.column(k).iter().copied().collect::<Vec<f64>>()).collect()
+    planes
+        .flat_map(|plane| plane.column(k).iter().copied().collect::<Vec<f64>>())
+        .collect()
 }
 
 /// Parts of column k of a − value·b.
 fn column_difference(a: &Dense, b: &Dense, k: usize, value: f64) -> Vec<f64> {
     let zero = DMatrix::zeros(0, 0);
     let mut parts: Vec<f64> =
-        a.re.column(k).iter().zip(b.re.column(k).iter()).map(|(a, b)| a - value * b).collect();
+        a.re.column(k)
+            .iter()
+            .zip(b.re.column(k).iter())
+            .map(|(a, b)| a - value * b)
+            .collect();
     if a.is_complex() || b.is_complex() {
-        let (left, right) = (a.im.as_ref().unwrap_or(&zero), b.im.as_ref().unwrap_or(&zero));
+        let (left, right) = (
+            a.im.as_ref().unwrap_or(&zero),
+            b.im.as_ref().unwrap_or(&zero),
+        );
         for row in 0..a.rows() {
             let left = left.get((row, k)).copied().unwrap_or(0.0);
             let right = right.get((row, k)).copied().unwrap_or(0.0);
@@ -115,7 +132,10 @@ fn column_difference(a: &Dense, b: &Dense, k: usize, value: f64) -> Vec<f64> {
 }
 
 fn adjoint(matrix: &Dense) -> Dense {
-    Dense { re: matrix.re.transpose(), im: matrix.im.as_ref().map(|im| -im.transpose()) }
+    Dense {
+        re: matrix.re.transpose(),
+        im: matrix.im.as_ref().map(|im| -im.transpose()),
+    }
 }
 
 fn difference(a: &Dense, b: &Dense) -> Dense {
@@ -125,7 +145,10 @@ fn difference(a: &Dense, b: &Dense) -> Dense {
         (None, Some(im)) => Some(-im.clone()),
         (Some(left), Some(right)) => Some(left - right),
     };
-    Dense { re: &a.re - &b.re, im }
+    Dense {
+        re: &a.re - &b.re,
+        im,
+    }
 }
 
 #[cfg(test)]
@@ -138,7 +161,9 @@ mod tests {
     use crate::solve::solve;
 
     fn hermitian(order: usize) -> Dense {
-        let re = DMatrix::from_fn(order, order, |i, j| ((i * j + i + j) % 7) as f64 / 8.0 - 0.3);
+        let re = DMatrix::from_fn(order, order, |i, j| {
+            ((i * j + i + j) % 7) as f64 / 8.0 - 0.3
+        });
         let im = DMatrix::from_fn(order, order, |i, j| (i as f64 - j as f64) / 16.0);
         Dense::complex(re, im)
     }
@@ -152,7 +177,10 @@ mod tests {
         let good = residual_bounds(&rounded, &approximation);
         // The bound's own share is about √2·20·u·(‖A‖ + |λ|) ≤ 60·u·‖A‖, and a
         // backward stable solver adds a small multiple of n·u·‖A‖.
-        assert!(good.iter().all(|bound| *bound < 300.0 * UNIT * size), "{good:?} for a norm of {size}");
+        assert!(
+            good.iter().all(|bound| *bound < 300.0 * UNIT * size),
+            "{good:?} for a norm of {size}"
+        );
         approximation.values[3] += 1e-6;
         let bad = residual_bounds(&rounded, &approximation);
         assert!(bad[3] > 0.9e-6 && bad[2] == good[2], "{bad:?}");
@@ -162,11 +190,17 @@ mod tests {
     fn an_eigenvalue_is_where_the_residual_says() {
         let mut run = run_of_order(8);
         let solution = run.outcome.as_ref().expect("converges");
-        let proof = prove(&run.problem, &solution.approximation, Level::Tight, &mut Unattended);
+        let proof = prove(
+            &run.problem,
+            &solution.approximation,
+            Level::Tight,
+            &mut Unattended,
+        );
         let bounds = residual_bounds(&run.rounded, &solution.approximation);
         let scale = run.scale();
         for (k, bound) in bounds.iter().enumerate() {
-            let value = crate::report::decimal::exact(solution.approximation.values[k], scale).expect("finite");
+            let value = crate::report::decimal::exact(solution.approximation.values[k], scale)
+                .expect("finite");
             // Vectors are of unit length to within rounding: twice the bound is ample.
             let reach = crate::report::decimal::exact(2.0 * bound, scale).expect("finite");
             let (low, high) = (&value - &reach, &value + &reach);
@@ -183,9 +217,14 @@ mod tests {
     #[test]
     fn quality_is_of_order_one_and_tells_a_spoilt_vector() {
         let rounded = Rounded::from_doubles(hermitian(12), None);
-        let mut approximation = solve(&rounded, &mut Silent, &mut Unattended).expect("converges").approximation;
+        let mut approximation = solve(&rounded, &mut Silent, &mut Unattended)
+            .expect("converges")
+            .approximation;
         let good = quality(&rounded, &approximation);
-        assert!(good.backward.expect("standard problem") < 10.0 && good.orthogonality < 10.0, "{good:?}");
+        assert!(
+            good.backward.expect("standard problem") < 10.0 && good.orthogonality < 10.0,
+            "{good:?}"
+        );
         approximation.vectors.re[(2, 5)] += 1e-3;
         let bad = quality(&rounded, &approximation);
         assert!(bad.orthogonality > 1e9, "{bad:?}");

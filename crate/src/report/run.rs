@@ -4,6 +4,7 @@
 use dashu_ratio::RBig;
 
 use super::decimal::{self, Rounding};
+use super::residual;
 use super::spectrum::Line;
 use crate::exact::ExactSpectrum;
 use crate::fingerprint::Taking;
@@ -46,6 +47,8 @@ pub struct Run {
     pub outcome: Result<Solution, SolveError>,
     /// Fingerprint of problem and result; empty without a result.
     pub fingerprint: String,
+    /// Bounds on the residual norms, scaled; empty without a result.
+    pub residual_bounds: Vec<f64>,
     /// What is proven so far.
     pub proof: Option<Proof>,
     /// What the exact road found.
@@ -65,6 +68,10 @@ impl Run {
         outcome: Result<Solution, SolveError>,
     ) -> Self {
         let fingerprint = fingerprint(&problem, &outcome);
+        let residual_bounds = match &outcome {
+            Ok(solution) => residual::residual_bounds(&rounded, &solution.approximation),
+            Err(_) => Vec::new(),
+        };
         Self {
             heading,
             problem,
@@ -72,6 +79,7 @@ impl Run {
             ledger,
             outcome,
             fingerprint,
+            residual_bounds,
             proof: None,
             exact: None,
         }
@@ -160,6 +168,12 @@ impl Run {
                 }
             })
             .collect()
+    }
+
+    /// The residual bound of the eigenvalue at `index` (from 0) as text.
+    pub fn residual_bound(&self, index: usize) -> Option<String> {
+        let bound = decimal::exact(*self.residual_bounds.get(index)?, self.rounded.matrix_scale)?;
+        Some(decimal::significant(&bound, 2, Rounding::Up))
     }
 
     /// A number of the scaled problem in `digits` significant digits.

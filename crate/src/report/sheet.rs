@@ -104,7 +104,10 @@ fn problem(run: &Run) -> Markup {
 }
 
 fn typed(text: &str) -> Markup {
-    let end = (0..=text.len().min(MOST_TYPED_BYTES)).rev().find(|at| text.is_char_boundary(*at)).unwrap_or(0);
+    let end = (0..=text.len().min(MOST_TYPED_BYTES))
+        .rev()
+        .find(|at| text.is_char_boundary(*at))
+        .unwrap_or(0);
     html! {
         pre { (text[..end]) }
         @if end < text.len() {
@@ -289,12 +292,19 @@ mod tests {
         run.heading.title = "<script>alert(1)</script> & \"co\"".to_owned();
         run.heading.notes = "<img src=x onerror=y>\nsecond".to_owned();
         run.heading.matrix_text = "1 </pre><b>2".to_owned();
-        run.heading.parameters.push(("<k>".to_owned(), "<v>".to_owned()));
+        run.heading
+            .parameters
+            .push(("<k>".to_owned(), "<v>".to_owned()));
         let file = report(&run);
         for tag in ["<script", "<img", "<b>", "<k>", "<v>"] {
             assert!(!file.text.contains(tag), "{tag} in {}", file.text);
         }
-        assert!(file.text.contains("&lt;script&gt;alert(1)&lt;/script&gt; &amp; "), "{}", file.text);
+        assert!(
+            file.text
+                .contains("&lt;script&gt;alert(1)&lt;/script&gt; &amp; "),
+            "{}",
+            file.text
+        );
         assert_eq!(file.name, "script-alert-1-script-co-sheet.html");
     }
 
@@ -304,17 +314,36 @@ mod tests {
         let before = report(&run).text;
         assert!(before.contains("not proven"), "{before}");
         let solution = run.outcome.as_ref().expect("converges");
-        let proof = prove(&run.problem, &solution.approximation, Level::Tight, &mut Unattended);
+        let proof = prove(
+            &run.problem,
+            &solution.approximation,
+            Level::Tight,
+            &mut Unattended,
+        );
         run.proof = Some(proof);
         let text = report(&run).text;
         for row in values::table(&run, 0).rows {
-            assert!(text.contains(&row.figure), "{} is missing from {text}", row.figure);
+            assert!(
+                text.contains(&row.figure),
+                "{} is missing from {text}",
+                row.figure
+            );
         }
         for ends in values::proven_ends(&run) {
-            assert!(text.contains(&typeset(&ends.lower)), "{} is missing from {text}", ends.lower);
+            assert!(
+                text.contains(&typeset(&ends.lower)),
+                "{} is missing from {text}",
+                ends.lower
+            );
         }
-        assert!(text.contains(&run.fingerprint) && text.contains("licensed practice"), "{text}");
-        assert!(!text.contains("http") && !text.contains("<script"), "{text}");
+        assert!(
+            text.contains(&run.fingerprint) && text.contains("licensed practice"),
+            "{text}"
+        );
+        assert!(
+            !text.contains("http") && !text.contains("<script"),
+            "{text}"
+        );
     }
 
     #[test]
@@ -322,6 +351,10 @@ mod tests {
         let mut run = run_of_order(2);
         run.heading.matrix_text = "é".repeat(MOST_TYPED_BYTES);
         let text = report(&run).text;
-        assert!(text.contains("The first 20000 of 40000 bytes"), "{}", text.len());
+        assert!(
+            text.contains("The first 20000 of 40000 bytes"),
+            "{}",
+            text.len()
+        );
     }
 }

@@ -2,9 +2,11 @@
 
 use serde::{Deserialize, Serialize};
 
-use super::decimal::typeset;
+use super::decimal::{self, typeset};
+use super::residual;
 use super::run::Run;
 use super::vector::{self, VectorView};
+use super::working::Fact;
 use crate::num::{figure, Dyadic};
 use crate::prove::Cluster;
 
@@ -39,6 +41,10 @@ pub struct ValueRow {
     pub standing: Standing,
     /// What that rests on, as a sentence.
     pub reason: String,
+    /// Bound on the norm of the largest residual of the line.
+    #[cfg_attr(target_arch = "wasm32", tsify(optional))]
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub residual: Option<String>,
 }
 
 /// The table.
@@ -63,6 +69,14 @@ pub struct Settled {
     pub reason: String,
 }
 
+/// Figures on the whole set.
+#[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
+pub struct Checks {
+    /// Name and figure.
+    pub facts: Vec<Fact>,
+}
+
 /// The table; at most `limit` significant digits, 0 for all that are proven.
 pub fn table(run: &Run, limit: u32) -> ValueTable {
     let lines = run.lines(limit);
@@ -75,6 +89,7 @@ pub fn table(run: &Run, limit: u32) -> ValueTable {
                 figure: line.figure,
                 standing: Standing::Plain,
                 reason: "Computed in double precision; nothing is proven of it yet.".to_owned(),
+                residual: largest_residual(run, line.first, line.last),
             })
             .collect();
         return ValueTable {
@@ -96,6 +111,7 @@ pub fn table(run: &Run, limit: u32) -> ValueTable {
                 Standing::Bounded
             },
             reason: reason(cluster, &theorems(run, cluster)),
+            residual: largest_residual(run, line.first, line.last),
         })
         .collect();
     ValueTable {
@@ -105,6 +121,36 @@ pub fn table(run: &Run, limit: u32) -> ValueTable {
                 digit, the eigenvalue can lie from the number printed."
                 .to_owned(),
     }
+}
+
+fn largest_residual(run: &Run, first: u32, last: u32) -> Option<String> {
+    let bounds = run.residual_bounds.get(first as usize - 1..last as usize)?;
+    let largest = (0..bounds.len()).max_by(|a, b| bounds[*a].total_cmp(&bounds[*b]))?;
+    run.residual_bound(first as usize - 1 + largest)
+        .map(|bound| typeset(&bound))
+}
+
+/// How good the whole set is, in units of n·u. Cost: a few n³ products.
+pub fn checks(run: &Run) -> Vec<Fact> {
+    let Ok(solution) = &run.outcome else {
+        return Vec::new();
+    };
+    let quality = residual::quality(&run.rounded, &solution.approximation);
+    let fact = |name: &str, value: f64| Fact {
+        name: name.to_owned(),
+        figure: typeset(&decimal::magnitude(value)),
+    };
+    let orthogonality = fact(
+        "orthogonality defect ‖XᴴMX − I‖/(n·u)",
+        quality.orthogonality,
+    );
+    let backward = quality
+        .backward
+        .map(|value| fact("backward error ‖A − XΛXᴴ‖/(n·u·‖A‖)", value));
+    backward
+        .into_iter()
+        .chain(std::iter::once(orthogonality))
+        .collect()
 }
 
 /// The published sources that the bounds of a cluster rest on.

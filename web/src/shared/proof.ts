@@ -76,7 +76,7 @@ export async function requestExact(beyondDefault: boolean): Promise<void> {
   const solved = latestSolution.value;
   if (solved === null || solved.revision !== sheet.value.revision) return;
   const { revision } = solved;
-  const found = await under('exact road', (bench) => bench.exact(beyondDefault, progress(revision)));
+  const found = await under('exact road', async (bench) => await bench.exact(beyondDefault, progress(revision)));
   settle(revision);
   if (found !== undefined) latestExact.value = { revision, value: found };
 }

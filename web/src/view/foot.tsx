@@ -1,5 +1,6 @@
 /** The foot line: title, order, closing balance and fingerprint, always in sight. */
 import { cancelWork, retryWork } from '../shared/pipeline';
+import { proof } from '../shared/proof';
 import { reading, sheet, solution, work } from '../shared/store';
 
 /** Two groups of eight: enough to tell two sheets apart by eye. */
@@ -69,7 +70,7 @@ export function FootLine() {
         </div>
         <div>
           <dt>closing balance</dt>
-          <dd class="digits">{solved?.closingBalance ?? '—'}</dd>
+          <dd class="digits">{(solved && (proof.value?.closing ?? solved.closingBalance)) ?? '—'}</dd>
         </div>
         <div>
           <dt>fingerprint</dt>

@@ -87,11 +87,14 @@ pub struct FileText {
 pub fn of_run(run: &Run, kind: ExportKind) -> Option<FileText> {
     let solution = run.outcome.as_ref().ok()?;
     let form = &solution.reduction.tridiagonal;
+    let bounds: Vec<String> = (0..run.order())
+        .filter_map(|k| run.residual_bound(k))
+        .collect();
     let data = Data {
         title: run.heading.title.trim(),
         labels: &run.heading.labels,
         approximation: &solution.approximation,
-        residual_bounds: &[],
+        residual_bounds: &bounds,
         tridiagonal: Some((&form.diagonal, &form.off_diagonal)),
         tridiagonal_scale: run.scale(),
         enclosures: &values::proven_ends(run),

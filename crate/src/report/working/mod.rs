@@ -7,7 +7,7 @@ mod rows;
 mod state;
 
 #[cfg(test)]
-mod tests;
+pub(crate) mod tests;
 
 pub use entry::entry;
 pub use history::history;

@@ -1,6 +1,7 @@
 /** The Eigenpairs section: values with what is known of them, and vectors. */
 import { solution, latestSolution } from '../../shared/store';
 import { SpectrumLine } from '../spectrum/line';
+import { Checks } from './checks';
 import { Tools } from './tools';
 import { Values } from './values';
 
@@ -21,6 +22,7 @@ export function Eigenpairs() {
       <SpectrumLine label="The spectrum" start={WHOLE} />
       <Tools settled={solution.value !== null} />
       <Values order={solved.order} />
+      <Checks />
     </>
   );
 }
