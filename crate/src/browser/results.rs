@@ -7,10 +7,12 @@ use wasm_bindgen::prelude::*;
 
 use super::read::Ready;
 use super::Workbench;
+use crate::claim;
 use crate::control::{Control, Flow, Stage};
 use crate::exact;
 use crate::ledger::Ledger;
 use crate::prove::{self, Level};
+use crate::report::claims::{self, ClaimSheet};
 use crate::report::exact_view::{self, ExactAnswer};
 use crate::report::export::{self, ExportKind, FileText};
 use crate::report::proof_view::{self, ProofView};
@@ -234,6 +236,17 @@ impl Workbench {
     /// The residual report.
     pub fn report(&self) -> Answer<FileText> {
         answer(self.run.as_ref().map(sheet::report))
+    }
+
+    /// Cuts a worked calculation into its claims.
+    pub fn split_claims(&self, text: &str) -> Vec<String> {
+        claim::split(text).into_iter().map(|claim| claim.trim().to_owned()).collect()
+    }
+
+    /// Judges claims, one text each.
+    pub fn judge(&self, texts: Vec<String>, report: &Function) -> Answer<ClaimSheet> {
+        let mut reporter = Reporter::new(report);
+        answer(self.run.as_ref().map(|run| claims::judge(run, &texts, &mut reporter)))
     }
 
     /// A data file.

@@ -5,6 +5,7 @@
 //! the few plain doubles beside them place things in pictures and are never
 //! printed.
 
+pub mod claims;
 pub mod decimal;
 pub mod exact_view;
 pub mod export;
