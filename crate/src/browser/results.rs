@@ -7,12 +7,12 @@ use wasm_bindgen::prelude::*;
 
 use super::read::Ready;
 use super::Workbench;
-use crate::claim;
+use crate::claim::Judgement;
 use crate::control::{Control, Flow, Stage};
 use crate::exact;
 use crate::ledger::Ledger;
 use crate::prove::{self, Level};
-use crate::report::claims::{self, ClaimSheet};
+use crate::report::claims;
 use crate::report::exact_view::{self, ExactAnswer};
 use crate::report::export::{self, ExportKind, FileText};
 use crate::report::proof_view::{self, ProofView};
@@ -106,7 +106,7 @@ impl Workbench {
         };
         let mut ledger = Ledger::new();
         for adjustment in &ready.assembly.adjustments {
-            ledger.enter_adjustment(adjustment.to_string(), adjustment.count);
+            ledger.enter_adjustment(adjustment.to_string(), adjustment.found.count);
         }
         let problem = ready.assembly.problem.clone();
         let rounded = problem.rounded();
@@ -238,15 +238,14 @@ impl Workbench {
         answer(self.run.as_ref().map(sheet::report))
     }
 
-    /// Cuts a worked calculation into its claims.
-    pub fn split_claims(&self, text: &str) -> Vec<String> {
-        claim::split(text).into_iter().map(|claim| claim.trim().to_owned()).collect()
-    }
-
-    /// Judges claims, one text each.
-    pub fn judge(&self, texts: Vec<String>, report: &Function) -> Answer<ClaimSheet> {
+    /// Judges claims; a text may hold several.
+    pub fn judge(&self, texts: Vec<String>, report: &Function) -> Answer<Judgement> {
         let mut reporter = Reporter::new(report);
-        answer(self.run.as_ref().map(|run| claims::judge(run, &texts, &mut reporter)))
+        answer(
+            self.run
+                .as_ref()
+                .map(|run| claims::judge(run, &texts, &mut reporter)),
+        )
     }
 
     /// A data file.

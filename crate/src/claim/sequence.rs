@@ -23,11 +23,7 @@ pub struct Line {
 
 /// The verdicts on a worked calculation, line by line.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-#[cfg_attr(
-    target_arch = "wasm32",
-    derive(tsify::Tsify),
-    tsify(into_wasm_abi, from_wasm_abi)
-)]
+#[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
 #[serde(rename_all = "camelCase")]
 pub struct Judgement {
     /// One for each claim, in order.

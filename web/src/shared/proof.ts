@@ -105,7 +105,11 @@ export function followSolutions(): void {
   });
 }
 
+/** Time for the sections to ask for their figures before the worker is taken. */
+const HEAD_START_MS = 40;
+
 async function proveInTurn(order: number): Promise<void> {
+  await new Promise((resolve) => { setTimeout(resolve, HEAD_START_MS); });
   await requestProof('quick');
   if (order <= LARGEST_ORDER_TIGHT_BY_ITSELF) await requestProof('tight');
 }

@@ -1,6 +1,7 @@
 /** The sections of the sheet, in the order of the work. */
 import type { ComponentType } from 'preact';
 
+import { Claims } from './claims/claims';
 import { Eigenpairs } from './eigenpairs/eigenpairs';
 import { Problem } from './problem/problem';
 import { Proof } from './proof/proof';
@@ -20,5 +21,6 @@ export const sections: readonly SectionEntry[] = [
   { id: 'working', heading: 'Working', component: Working, derived: true },
   { id: 'eigenpairs', heading: 'Eigenpairs', component: Eigenpairs, derived: true },
   { id: 'proof', heading: 'Proof', component: Proof, derived: true },
+  { id: 'claims', heading: 'Claims', component: Claims, derived: true },
   { id: 'sheet', heading: 'Sheet', component: Sheet, derived: true },
 ];
