@@ -80,6 +80,7 @@ fn heading(ready: &Ready) -> Heading {
             .map(|parameter| (parameter.name.clone(), parameter.value.clone()))
             .collect(),
         labels: ready.row_labels.clone(),
+        claims: document.claims.clone(),
     }
 }
 

@@ -30,6 +30,8 @@ pub struct Heading {
     pub parameters: Vec<(String, String)>,
     /// Row labels; empty, or one a row.
     pub labels: Vec<String>,
+    /// Claims as typed.
+    pub claims: Vec<String>,
 }
 
 /// One run with everything found of it so far.

@@ -5,6 +5,7 @@
 
 use maud::{html, Markup, DOCTYPE};
 
+use super::claims;
 use super::decimal::typeset;
 use super::exact_view;
 use super::export::{file_name, FileText};
@@ -13,6 +14,8 @@ use super::run::Run;
 use super::solution;
 use super::values::{self, Standing};
 use super::working;
+use crate::claim::Word;
+use crate::control::Unattended;
 use crate::ledger::Act;
 
 const STYLE: &str = "\
@@ -60,6 +63,7 @@ fn document(run: &Run) -> Markup {
                 (eigenvalues(run))
                 (proof(run))
                 (exact(run))
+                (claimed(run))
                 (working_summary(run))
                 (closing(run))
             }
@@ -240,6 +244,41 @@ fn exact(run: &Run) -> Markup {
     }
 }
 
+fn claimed(run: &Run) -> Markup {
+    if run
+        .heading
+        .claims
+        .iter()
+        .all(|claim| claim.trim().is_empty())
+    {
+        return html! {};
+    }
+    let judgement = claims::judge(run, &run.heading.claims, &mut Unattended);
+    html! {
+        h2 { "Claims" }
+        @for (place, line) in (0u32..).zip(&judgement.lines) {
+            pre { (line.text) }
+            @match (&line.verdict, &line.error) {
+                (Some(verdict), _) => p {
+                    b { (word(verdict.word)) } ": " (verdict.sentence)
+                    @if judgement.first_wrong == Some(place) { " Here it first goes wrong." }
+                    @for finding in &verdict.findings { " " (finding.text) }
+                },
+                (None, Some(error)) => p { "Not understood: " (error) },
+                (None, None) => {},
+            }
+        }
+    }
+}
+
+fn word(word: Word) -> &'static str {
+    match word {
+        Word::Confirmed => "confirmed",
+        Word::Refuted => "refuted",
+        Word::Undecided => "undecided",
+    }
+}
+
 fn working_summary(run: &Run) -> Markup {
     let summary = working::summary(run);
     html! {
@@ -282,7 +321,6 @@ fn closing(run: &Run) -> Markup {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::control::Unattended;
     use crate::prove::{prove, Level};
     use crate::report::working::tests::run_of_order;
 
@@ -342,6 +380,21 @@ mod tests {
         );
         assert!(
             !text.contains("http") && !text.contains("<script"),
+            "{text}"
+        );
+    }
+
+    #[test]
+    fn claims_stand_on_the_sheet_with_their_verdicts() {
+        let mut run = run_of_order(3);
+        run.heading.claims = vec!["trace: 1000000".to_owned(), "<i>moon</i>: 3".to_owned()];
+        let text = report(&run).text;
+        assert!(
+            text.contains("refuted") && text.contains("first goes wrong"),
+            "{text}"
+        );
+        assert!(
+            text.contains("Not understood") && !text.contains("<i>"),
             "{text}"
         );
     }

@@ -103,7 +103,7 @@ function Claim({ line, first }: { line: Line; first: boolean }) {
 }
 
 function Editor() {
-  const kept = sheet.value.value.claims.join('\n');
+  const kept = (sheet.value.value.claims ?? []).join('\n');
   const [draft, setDraft] = useState<string | null>(null);
   const text = draft ?? kept;
   return (
@@ -139,7 +139,7 @@ function Editor() {
 }
 
 export function Claims() {
-  const { claims } = sheet.value.value;
+  const claims = sheet.value.value.claims ?? [];
   const solved = latestSolution.value;
   const key = figuresKey.value;
   const judgement = useRemote(
