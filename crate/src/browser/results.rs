@@ -227,6 +227,12 @@ impl Workbench {
         answer(Some(view))
     }
 
+    /// The certificate: problem, vectors and bounds, for another program to
+    /// check.
+    pub fn certificate(&self) -> Answer<FileText> {
+        answer(self.run.as_ref().and_then(export::certificate))
+    }
+
     /// How good the whole set is.
     pub fn checks(&self) -> Answer<Checks> {
         answer(self.run.as_ref().map(|run| Checks {

@@ -115,6 +115,25 @@ pub fn typeset(figure: &str) -> String {
     figure.replace('-', "−")
 }
 
+/// The same for a sentence with figures in it: only a hyphen before an exponent
+/// or a number is one of theirs.
+pub fn typeset_sentence(sentence: &str) -> String {
+    let characters: Vec<char> = sentence.chars().collect();
+    let digit = |at: usize| characters.get(at).is_some_and(char::is_ascii_digit);
+    (0..characters.len())
+        .map(|at| {
+            let before = at.checked_sub(1).map(|before| characters[before]);
+            let exponent = before == Some('e') && at >= 2 && digit(at - 2);
+            let leading = matches!(before, None | Some(' ' | '('));
+            if characters[at] == '-' && digit(at + 1) && (exponent || leading) {
+                '−'
+            } else {
+                characters[at]
+            }
+        })
+        .collect()
+}
+
 /// A bound in two significant digits, never less than `bound`: `2.3e-15`.
 pub fn bound(bound: f64) -> String {
     match exact(bound, 0) {
@@ -239,6 +258,14 @@ mod tests {
             "0.000"
         );
         assert_eq!(significant(&RBig::ZERO, 9, Rounding::Nearest), "0");
+    }
+
+    #[test]
+    fn sentences_keep_their_hyphens() {
+        assert_eq!(
+            typeset_sentence("A re-run of -3.5 within 1.2e-15, double-checked"),
+            "A re-run of −3.5 within 1.2e−15, double-checked"
+        );
     }
 
     #[test]

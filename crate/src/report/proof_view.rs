@@ -2,7 +2,7 @@
 
 use serde::{Deserialize, Serialize};
 
-use super::decimal::typeset;
+use super::decimal::{typeset, typeset_sentence};
 use super::run::Run;
 use super::values::{closing_balance, Standing};
 use crate::prove::{Condition, Level, Proof, Theorem, Verdict};
@@ -114,7 +114,7 @@ fn condition(condition: &Condition) -> ConditionView {
     ConditionView {
         symbol: condition.kind().symbol().to_owned(),
         bound: condition.bound_text().map(|bound| typeset(&bound)),
-        sentence: condition.sentence().to_owned(),
+        sentence: typeset_sentence(condition.sentence()),
         standing: match condition.verdict() {
             Verdict::Proved => Standing::Proven,
             Verdict::Refuted => Standing::Refuted,

@@ -380,7 +380,7 @@ impl Axis {
             let at = window.position(&(RBig::from(count.clone()) * &step));
             ticks.push(Tick {
                 at,
-                label: decimal::written(&n, place),
+                label: label(&n, place),
             });
             count += IBig::ONE;
         }
@@ -391,9 +391,18 @@ impl Axis {
         Self {
             prefix,
             ticks,
-            step: decimal::written(&IBig::from(mantissa), place),
+            step: label(&IBig::from(mantissa), place),
         }
     }
+}
+
+/// n·10^place; the zeros of a whole number are known, so they may be written.
+fn label(n: &IBig, place: i32) -> String {
+    let text = match u32::try_from(place) {
+        Ok(zeros @ 1..=6) => decimal::written(&(n * IBig::from(10u32.pow(zeros))), 0),
+        _ => decimal::written(n, place),
+    };
+    decimal::typeset(&text)
 }
 
 /// What all labels begin with, if that is long enough to be worth taking out;
@@ -439,135 +448,4 @@ fn to_f64(x: &RBig) -> f64 {
 }
 
 #[cfg(test)]
-mod tests {
-    use super::*;
-
-    fn line(index: u32, value: RBig, half_width: Option<RBig>) -> Line {
-        Line {
-            first: index,
-            last: index,
-            enclosure: half_width.map(|w| (&value - &w, &value + &w)),
-            approx: value,
-            figure: String::new(),
-        }
-    }
-
-    fn ratio(n: i64, d: u64) -> RBig {
-        RBig::from_parts(IBig::from(n), UBig::from(d))
-    }
-
-    #[test]
-    fn the_whole_spectrum_is_inside_the_first_window() {
-        let lines: Vec<Line> = (0..7)
-            .map(|k| line(k + 1, ratio(i64::from(k) * 5 - 9, 3), None))
-            .collect();
-        let seen = view(&Window::all(&lines), &lines);
-        assert_eq!(seen.marks.len(), 7, "{seen:?}");
-        assert!(
-            seen.marks.iter().all(|mark| mark.at.abs() < 0.95),
-            "{seen:?}"
-        );
-        assert!((4..=10).contains(&seen.ticks.len()), "{:?}", seen.ticks);
-    }
-
-    #[test]
-    fn a_lens_shows_an_enclosure_of_five_hundred_digits() {
-        let width = decimal::ten_to(-500);
-        let lines = [
-            line(1, ratio(1, 3), Some(width.clone())),
-            line(2, ratio(2, 3), Some(width)),
-        ];
-        let window = Window::all(&lines).moved(&WindowMove::Lens { line: 1 }, &lines);
-        let seen = view(&window, &lines);
-        assert_eq!(
-            (seen.left_of, seen.right_of, seen.marks.len()),
-            (1, 0, 1),
-            "{seen:?}"
-        );
-        let mark = &seen.marks[0];
-        let (lower, upper) = (mark.lower.expect("proven"), mark.upper.expect("proven"));
-        assert!(
-            -0.6 < lower && lower < -0.4 && 0.4 < upper && upper < 0.6,
-            "{lower} {upper}"
-        );
-        assert!(seen.prefix.starts_with("0.66666666"), "{}", seen.prefix);
-        assert!(
-            seen.ticks.iter().all(|tick| tick.label.len() >= 3),
-            "{:?}",
-            seen.ticks
-        );
-    }
-
-    #[test]
-    fn zooming_keeps_the_point_under_the_pointer() {
-        let lines = [
-            line(1, ratio(-4, 1), None),
-            line(2, ratio(1, 7), None),
-            line(3, ratio(6, 1), None),
-        ];
-        let mut window = Window::all(&lines);
-        let start = view(&window, &lines).marks[1].at;
-        for _ in 0..200 {
-            let about = window.position(&lines[1].approx);
-            window = window.moved(&WindowMove::Zoom { factor: 0.8, about }, &lines);
-        }
-        let end = window.position(&lines[1].approx);
-        // Each step rounds the centre to its unit, about 10^−6 half widths,
-        // and an error made earlier is magnified by what follows until the
-        // next step corrects for it.
-        assert!((end - start).abs() < 1e-3, "{start} became {end}");
-    }
-
-    #[test]
-    fn a_window_survives_its_text_and_nonsense_does_not() {
-        let lines = [line(1, ratio(1, 3), None)];
-        let window = Window::all(&lines);
-        assert_eq!(Window::parse(&window.text()), Some(window));
-        for text in [
-            "",
-            "1:2",
-            "1:1048576:999999",
-            "x:1048576:0",
-            "1:7:0",
-            "1:1048576:0:0",
-        ] {
-            assert_eq!(Window::parse(text), None, "{text}");
-        }
-    }
-
-    #[test]
-    fn equal_values_are_stacked() {
-        let lines: Vec<Line> = (1..=3).map(|k| line(k, ratio(5, 2), None)).collect();
-        let stacked: Vec<u32> = view(&Window::all(&lines), &lines)
-            .marks
-            .iter()
-            .map(|m| m.stacked)
-            .collect();
-        assert_eq!(stacked, [0, 1, 2]);
-    }
-
-    #[test]
-    fn moves_with_nonsense_in_them_are_survived() {
-        let lines = [line(1, ratio(1, 3), None), line(2, ratio(4, 3), None)];
-        let window = Window::all(&lines);
-        for by in [
-            WindowMove::Pan { by: f64::NAN },
-            WindowMove::Pan { by: f64::INFINITY },
-            WindowMove::Zoom {
-                factor: f64::NAN,
-                about: f64::NAN,
-            },
-            WindowMove::Zoom {
-                factor: 0.0,
-                about: 9.0,
-            },
-            WindowMove::Lens { line: 99 },
-        ] {
-            let moved = window.clone().moved(&by, &lines);
-            assert!(
-                Window::parse(&moved.text()).is_some(),
-                "{by:?} gave {moved:?}"
-            );
-        }
-    }
-}
+mod tests;

@@ -11,6 +11,7 @@ mod matrix_market;
 use serde::{Deserialize, Serialize};
 
 use crate::pairs::Approximation;
+use crate::prove;
 use crate::report::run::Run;
 use crate::report::values;
 
@@ -101,6 +102,17 @@ pub fn of_run(run: &Run, kind: ExportKind) -> Option<FileText> {
         fingerprint: &run.fingerprint,
     };
     Some(export(&data, kind))
+}
+
+/// The certificate of the proof as a file; `None` when nothing is proven.
+pub fn certificate(run: &Run) -> Option<FileText> {
+    let solution = run.outcome.as_ref().ok()?;
+    let proof = run.proven()?;
+    Some(FileText {
+        name: file_name(run.heading.title.trim(), "certificate.json"),
+        media_type: "application/json".to_owned(),
+        text: prove::certificate(&run.problem, &solution.approximation, proof).to_string(),
+    })
 }
 
 /// Writes one file.

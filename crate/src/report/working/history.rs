@@ -219,7 +219,7 @@ fn words(
     every: usize,
 ) -> String {
     let which = if drawn == all {
-        format!("All {all} off-diagonals")
+        format!("{all} off-diagonals")
     } else {
         format!("{drawn} of the {all} off-diagonals, evenly spaced,")
     };

@@ -82,17 +82,16 @@ fn words(run: &Run, act: &Act, sweeps: usize) -> String {
     let order = run.ledger.order();
     match act {
         Act::Adjustment { text, .. } => text.clone(),
-        Act::Scaling { matrix, metric } => match metric {
-            None => format!(
-                "powers of two: matrix by 2^{}",
-                typeset(&(-matrix).to_string())
-            ),
-            Some(metric) => format!(
-                "powers of two: matrix by 2^{}, metric by 2^{}",
-                typeset(&(-matrix).to_string()),
-                typeset(&(-metric).to_string())
-            ),
-        },
+        Act::Scaling { matrix, metric } => {
+            let by = |exponent: i32| match exponent {
+                0 => "as it is".to_owned(),
+                exponent => format!("times 2^{}", typeset(&(-exponent).to_string())),
+            };
+            let metric = metric.map_or(String::new(), |exponent| {
+                format!("; metric {}", by(exponent))
+            });
+            format!("into double precision: matrix {}{metric}", by(*matrix))
+        }
         Act::Metric { .. } => {
             "Cholesky factor of the metric; the matrix becomes L⁻¹AL⁻ᴴ".to_owned()
         }
@@ -129,11 +128,10 @@ fn words(run: &Run, act: &Act, sweeps: usize) -> String {
             run.figure(step.shift, ROW_DIGITS)
         ),
         Act::Deflation(deflation) => format!(
-            "deflation between rows {} and {}: {} ≤ {}",
+            "deflation between rows {} and {}, size {}",
             deflation.index + 1,
             deflation.index + 2,
-            magnitude(run, deflation.size),
-            magnitude(run, deflation.threshold)
+            run.figure(deflation.size, 2)
         ),
     }
 }
