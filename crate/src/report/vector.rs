@@ -89,12 +89,11 @@ pub fn figure(x: f64, decimals: u32) -> String {
 
 /// re + im·i to `decimals` places.
 pub fn complex_figure(re: f64, im: f64, decimals: u32) -> String {
-    let sign = if im.is_sign_negative() { '−' } else { '+' };
-    format!(
-        "{} {sign} {}i",
-        figure(re, decimals),
-        figure(im.abs(), decimals)
-    )
+    let imaginary = figure(im.abs(), decimals);
+    // A part that rounds to zero has no sign to show.
+    let shown = imaginary.contains(|digit: char| ('1'..='9').contains(&digit));
+    let sign = if shown && im < 0.0 { '−' } else { '+' };
+    format!("{} {sign} {imaginary}i", figure(re, decimals))
 }
 
 #[cfg(test)]

@@ -40,7 +40,7 @@ function Polynomial({ view }: { view: ExactView }) {
       {view.polynomial.map((term) => (
         <Fragment key={term.power}>
           {' '}
-          {term.sign} {term.coefficient}
+          {term.sign} {term.coefficient === '' ? '' : `${term.coefficient} `}
           {term.power > 0 && <>λ{term.power > 1 && <sup>{term.power}</sup>}</>}
         </Fragment>
       ))}

@@ -5,6 +5,7 @@ import type { ConditionView, ProofView } from '../../shared/generated/eigenledge
 import { useState } from 'preact/hooks';
 import { Figure } from '../parts/margin';
 import { SpectrumLine } from '../spectrum/line';
+import { Certificate } from './certificate';
 import { ExactRoad } from './exact';
 
 const CHOSEN = { move: 'lens', line: 0 } as const;
@@ -117,6 +118,7 @@ export function Proof() {
             <Condition key={condition.symbol} condition={condition} />
           ))}
           <Rests view={view} />
+          <Certificate />
         </>
       )}
       <ExactRoad />

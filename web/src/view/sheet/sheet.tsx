@@ -28,7 +28,9 @@ export function Sheet() {
         </button>
         <span class="soft">one file that opens in any browser, without a network</span>
       </p>
-      <iframe ref={frame} class="sheet-preview screen-only" title="The sheet" sandbox="allow-same-origin allow-modals" srcdoc={file.text} />
+      <div class="sheet-preview screen-only">
+        <iframe ref={frame} title="The sheet" sandbox="allow-same-origin allow-modals" srcdoc={file.text} />
+      </div>
     </>
   );
 }

@@ -7,11 +7,14 @@ import { useEffect, useRef, useState } from 'preact/hooks';
 
 import type { SpectrumMark, SpectrumView, WindowMove } from '../../shared/generated/eigenledger';
 import { figuresKey } from '../../shared/proof';
-import { chosenEigenvalue, digits } from '../../shared/store';
+import { chosenEigenvalue, digits, latestSolution } from '../../shared/store';
 import { useRemote } from '../parts/remote';
+import { useWidth } from '../parts/width';
 
-const WIDTH = 1000;
+const WIDTH_AT_FIRST = 1000;
 const HEIGHT = 128;
+/** Room above the highest mark, for counts and for what lies beyond. */
+const HEADROOM = 24;
 const AXIS_Y = 92;
 const MARK_HEIGHT = 34;
 const STACK_STEP = 9;
@@ -19,12 +22,12 @@ const MOST_STACKED = 6;
 /** Narrower enclosures are drawn as a single stroke, in view units. */
 const NARROWEST_BAR = 3;
 const ZOOM_STEP = 0.5;
+/** About the width of a digit of a label, in pixels. */
+const LABEL_DIGIT_WIDTH = 9;
 
-function x(at: number): number {
-  return ((at + 1) / 2) * WIDTH;
-}
+type Place = (at: number) => number;
 
-function MarkShape({ mark, chosen }: { mark: SpectrumMark; chosen: boolean }) {
+function MarkShape({ mark, chosen, x }: { mark: SpectrumMark; chosen: boolean; x: Place }) {
   const count = mark.last - mark.first + 1;
   const lift = Math.min(mark.stacked, MOST_STACKED) * STACK_STEP;
   const top = AXIS_Y - MARK_HEIGHT - lift;
@@ -54,25 +57,29 @@ function MarkShape({ mark, chosen }: { mark: SpectrumMark; chosen: boolean }) {
   );
 }
 
-function Axis({ view }: { view: SpectrumView }) {
+function Axis({ view, top, width, x }: { view: SpectrumView; top: number; width: number; x: Place }) {
+  const longest = Math.max(1, ...view.ticks.map((tick) => tick.label.length + 2));
+  const every = Math.max(1, Math.ceil((view.ticks.length * longest * LABEL_DIGIT_WIDTH) / width));
   return (
     <g class="axis" aria-hidden="true">
-      <line x1={0} x2={WIDTH} y1={AXIS_Y} y2={AXIS_Y} />
-      {view.ticks.map((tick) => (
+      <line x1={0} x2={width} y1={AXIS_Y} y2={AXIS_Y} />
+      {view.ticks.map((tick, place) => (
         <g key={tick.label}>
           <line x1={x(tick.at)} x2={x(tick.at)} y1={AXIS_Y} y2={AXIS_Y + 6} />
-          <text x={x(tick.at)} y={AXIS_Y + 22} text-anchor="middle">
-            {view.prefix === '' ? tick.label : `…${tick.label}`}
-          </text>
+          {place % every === 0 && (
+            <text x={x(tick.at)} y={AXIS_Y + 22} text-anchor="middle">
+              {view.prefix === '' ? tick.label : `…${tick.label}`}
+            </text>
+          )}
         </g>
       ))}
       {view.leftOf > 0 && (
-        <text class="beyond" x={4} y={16}>
+        <text class="beyond" x={4} y={top + 16}>
           ◂ {view.leftOf}
         </text>
       )}
       {view.rightOf > 0 && (
-        <text class="beyond" x={WIDTH - 4} y={16} text-anchor="end">
+        <text class="beyond" x={width - 4} y={top + 16} text-anchor="end">
           {view.rightOf} ▸
         </text>
       )}
@@ -95,6 +102,8 @@ export function SpectrumLine({ label, start }: { label: string; start: WindowMov
   const [asked, setAsked] = useState<Asked>({ turn: 0, move: start });
   const shown = useRef<string | undefined>(undefined);
   const answered = useRef(-1);
+  const solved = useRef<number | undefined>(undefined);
+  const [width, setFigure] = useWidth(WIDTH_AT_FIRST);
   const drag = useRef<{ at: number; moved: boolean } | null>(null);
   const picture = useRef<SVGSVGElement>(null);
   const key = figuresKey.value;
@@ -102,12 +111,17 @@ export function SpectrumLine({ label, start }: { label: string; start: WindowMov
     key === null ? null : `${key} ${String(digits.value)} ${String(asked.turn)}`,
     async (bench) => {
       const limit = digits.value === 'proven' ? 0 : digits.value;
-      // A move is made once; asked again after a proof, the window stays.
-      const move: WindowMove = answered.current === asked.turn ? { move: 'stay' } : asked.move;
+      // A move is made once; asked again after a proof, the window stays, and a
+      // new solution begins afresh.
+      const { revision } = latestSolution.value ?? {};
+      const fresh = solved.current !== revision;
+      const move: WindowMove = fresh ? start : answered.current === asked.turn ? { move: 'stay' } : asked.move;
+      if (fresh) shown.current = undefined;
       const seen = await bench.spectrum(shown.current, move, limit);
       if (seen !== undefined) {
         shown.current = seen.window;
         answered.current = asked.turn;
+        solved.current = revision;
       }
       return seen;
     },
@@ -134,6 +148,9 @@ export function SpectrumLine({ label, start }: { label: string; start: WindowMov
   }, [present]);
 
   if (view === undefined) return null;
+  const x = (at: number) => ((at + 1) / 2) * width;
+  const highest = Math.min(MOST_STACKED, Math.max(0, ...view.marks.map((mark) => mark.stacked)));
+  const top = AXIS_Y - MARK_HEIGHT - highest * STACK_STEP - HEADROOM;
   const chosen = chosenEigenvalue.value ?? 0;
   const isChosen = (mark: SpectrumMark) => chosen + 1 >= mark.first && chosen + 1 <= mark.last;
   const chosenLine = view.lines.findIndex((line) => chosen + 1 >= line.first && chosen + 1 <= line.last);
@@ -189,10 +206,10 @@ export function SpectrumLine({ label, start }: { label: string; start: WindowMov
     if (nearest !== undefined) chosenEigenvalue.value = nearest.first - 1;
   };
   return (
-    <figure class="spectrum">
+    <figure class="spectrum" ref={setFigure}>
       <svg
         ref={picture}
-        viewBox={`0 0 ${String(WIDTH)} ${String(HEIGHT)}`}
+        viewBox={`0 ${String(top)} ${String(width)} ${String(HEIGHT - top)}`}
         role="img"
         tabIndex={0}
         aria-label={alternative(view, label)}
@@ -201,9 +218,9 @@ export function SpectrumLine({ label, start }: { label: string; start: WindowMov
         onPointerMove={dragged}
         onPointerUp={released}
       >
-        <Axis view={view} />
+        <Axis view={view} top={top} width={width} x={x} />
         {view.marks.map((mark) => (
-          <MarkShape key={mark.line} mark={mark} chosen={isChosen(mark)} />
+          <MarkShape key={mark.line} mark={mark} chosen={isChosen(mark)} x={x} />
         ))}
       </svg>
       <figcaption>

@@ -2,25 +2,28 @@
 import type { HistoryView } from '../../shared/generated/eigenledger';
 import { chosenEntry } from '../../shared/store';
 import { useRemote } from '../parts/remote';
+import { useWidth } from '../parts/width';
 
-const WIDTH = 1000;
+const WIDTH_AT_FIRST = 1000;
 const HEIGHT = 260;
 const LEFT = 64;
 const FOOT = 232;
 const HEAD = 10;
+/** Room for the number of a sweep on the axis. */
+const SWEEP_LABEL_WIDTH = 60;
 
-function Picture({ view }: { view: HistoryView }) {
+function Picture({ view, width }: { view: HistoryView; width: number }) {
   const span = Math.max(1, view.sweeps);
-  const x = (sweep: number) => LEFT + 6 + (sweep / span) * (WIDTH - LEFT - 16);
+  const x = (sweep: number) => LEFT + 6 + (sweep / span) * (width - LEFT - 16);
   const y = (height: number) => FOOT - height * (FOOT - HEAD);
-  const every = Math.max(1, Math.ceil(view.sweeps / 10));
+  const every = Math.max(1, Math.ceil((view.sweeps * SWEEP_LABEL_WIDTH) / width));
   const sweeps = Array.from({ length: Math.floor(view.sweeps / every) + 1 }, (_, k) => k * every);
   return (
-    <svg viewBox={`0 0 ${String(WIDTH)} ${String(HEIGHT)}`} role="img" aria-label={view.words}>
+    <svg viewBox={`0 0 ${String(width)} ${String(HEIGHT)}`} role="img" aria-label={view.words}>
       <g class="axis" aria-hidden="true">
         {view.ticks.map((tick) => (
           <g key={tick.label}>
-            <line x1={LEFT} x2={WIDTH} y1={y(tick.at)} y2={y(tick.at)} />
+            <line x1={LEFT} x2={width} y1={y(tick.at)} y2={y(tick.at)} />
             <text x={LEFT - 8} y={y(tick.at) + 4} text-anchor="end">
               {tick.label}
             </text>
@@ -58,13 +61,14 @@ function Picture({ view }: { view: HistoryView }) {
 
 export function History({ revision }: { revision: number }) {
   const view = useRemote(String(revision), (bench) => bench.history());
+  const [width, setFigure] = useWidth(WIDTH_AT_FIRST);
   if (view === undefined || view.sweeps === 0) return null;
   return (
-    <figure class="history">
+    <figure class="history" ref={setFigure}>
       <figcaption>
         Size of the off-diagonals, sweep by sweep; <span class="deflation-key" aria-hidden="true">▾</span> a deflation
       </figcaption>
-      <Picture view={view} />
+      <Picture view={view} width={width} />
       <p class="soft">{view.words}</p>
     </figure>
   );
