@@ -37,6 +37,7 @@ pub mod problem;
 pub mod prove;
 pub mod reduce;
 pub mod report;
+pub mod residuals;
 pub mod sensitivity;
 pub mod solve;
 

@@ -3,7 +3,7 @@
 use crate::control::Control;
 use crate::iterate::{iterate, IterateError, Iteration, Limits};
 use crate::ledger::Recorder;
-use crate::matrix::norms::power_of_two;
+use crate::matrix::norms::{largest, power_of_two};
 use crate::matrix::Dense;
 use crate::pairs::{pairs, Approximation, PairsError, Road};
 use crate::problem::Rounded;
@@ -85,10 +85,13 @@ impl Rounded {
 }
 
 fn scaled(mut matrix: Dense) -> (Dense, i32) {
-    let planes = || [Some(&matrix.re), matrix.im.as_ref()].into_iter().flatten();
-    let largest = planes()
-        .flat_map(|plane| plane.as_slice())
-        .fold(0.0_f64, |largest, x| largest.max(x.abs()));
+    let planes = [Some(&matrix.re), matrix.im.as_ref()];
+    let largest = largest(
+        planes
+            .into_iter()
+            .flatten()
+            .flat_map(|plane| plane.as_slice()),
+    );
     if largest == 0.0 || !largest.is_finite() {
         return (matrix, 0);
     }

@@ -30,11 +30,10 @@ const ENVIRONMENTS: [&str; 16] = [
     "psmallmatrix",
 ];
 
-/// Whether the text holds such an environment, or its inside: cells at `&` and
-/// rows at `\\`.
+/// Whether the text holds such an environment, or its inside: cells at `&`,
+/// which means nothing else in a text of numbers.
 pub(crate) fn looks_like(body: &str) -> bool {
-    body.contains("\\begin{")
-        || (body.contains('&') && (body.contains("\\\\") || body.contains("\\frac")))
+    body.contains("\\begin{") || body.contains('&')
 }
 
 /// Reads the first such environment; without one, the whole text is its inside.
@@ -219,6 +218,25 @@ fn after_rule(source: &str, at: usize, end: usize) -> usize {
     after_group(&source[..end], at, ARGUMENT)
 }
 
+/// The text of a cell without the comment that ends it.
+fn without_comment(text: &str) -> &str {
+    let percent = text
+        .match_indices('%')
+        .find(|&(at, _)| !text[..at].ends_with('\\'));
+    match percent {
+        Some((at, _)) => {
+            let comment = text[at..].find(clean::is_line_break);
+            let rest = comment.map_or("", |end| &text[at + end..]);
+            if clean::is_blank(rest) {
+                &text[..at]
+            } else {
+                text
+            }
+        }
+        None => text,
+    }
+}
+
 struct Cells<'a> {
     source: &'a str,
     /// Whether a cell of the row has been ended.
@@ -227,6 +245,7 @@ struct Cells<'a> {
 
 impl Cells<'_> {
     fn push(&self, start: usize, end: usize, table: &mut RawTable, findings: &mut Findings) {
+        let end = start + without_comment(&self.source[start..end]).len();
         let (from, to) = clean::trim(&self.source[start..end]);
         let (start, end) = (start + from, start + to);
         let text = &self.source[start..end];

@@ -320,6 +320,10 @@ fn fill(
 }
 
 #[cfg(test)]
+mod cell_tests;
+#[cfg(test)]
 mod layout_properties;
+#[cfg(test)]
+mod parameters_tests;
 #[cfg(test)]
 mod tests;

@@ -7,7 +7,7 @@
 
 use super::{Event, Listening, Recorder, Totals};
 use crate::iterate::{Deflation, SweepStep};
-use crate::reduce::{ReductionRun, Tridiagonal};
+use crate::reduce::{Checkpoint, ReductionRun, Tridiagonal};
 
 /// A run of numbers in the ledger's pool; see [`Ledger::numbers`].
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -113,7 +113,7 @@ pub struct Ledger {
     entries: Vec<Entry>,
     pool: Vec<f64>,
     /// States of the reduction, each with the number of entries before it.
-    pub(super) reductions: Vec<(usize, ReductionRun)>,
+    pub(super) reductions: Vec<(usize, Checkpoint)>,
     /// States of the iteration, each with the number of entries before it.
     pub(super) tridiagonals: Vec<(usize, Tridiagonal)>,
     /// Where in the pool each off-diagonal's present value is.
@@ -194,7 +194,7 @@ impl Ledger {
     }
 
     fn checkpoint_reduction(&mut self, run: &ReductionRun) {
-        self.reductions.push((self.entries.len(), run.clone()));
+        self.reductions.push((self.entries.len(), run.checkpoint()));
     }
 
     fn sweep(&mut self, step: SweepStep, tridiagonal: &Tridiagonal) -> Act {

@@ -83,7 +83,7 @@ impl Ledger {
         let Some((after, run)) = nearest(&self.reductions, wanted) else {
             return Err(ReplayError::BeforeReduction { entry });
         };
-        let mut run = run.clone();
+        let mut run = run.resume();
         for _ in *after..wanted {
             run.step();
         }

@@ -1,24 +1,25 @@
 //! Matrix products.
 //!
-//! Notation: C ← C ± op(A) op(B), m × n with inner length k; op is the identity
-//! or the conjugate transpose. All storage is column-major.
+//! Notation: C ← C ± op(A) B, m × n with inner length k; op is the identity or
+//! the conjugate transpose. All storage is column-major, in planes.
 //!
 //! The inner loop works on tiles of 4 × 4 held in registers; operands are
-//! packed so that it reads memory in order. Within a tile each entry of C is
-//! summed over the inner index in ascending order, in slices of [`DEPTH`]
-//! terms; slices are then added to C in order. The order of summation depends
-//! on the shape alone. Every term is a plain product (no three-multiplication
-//! trick), so the usual bound holds entry by entry:
-//! |fl(C) − C| ≤ γ |A||B| + underflow, γ = γ_{k+⌈k/DEPTH⌉} for real operands and
-//! γ_{2k+2⌈k/DEPTH⌉} with |·| the sum of the parts' moduli for complex ones
-//! (Higham, "Accuracy and Stability of Numerical Algorithms", 2nd ed., §3).
-//! Nothing is scaled: entries whose products overflow or underflow do so.
+//! packed so that it reads memory in order. Each entry of a plane of C is
+//! summed over the inner index in ascending order (for complex operands first
+//! the products of the left real parts, then those of the left imaginary
+//! parts), in slices of [`DEPTH`] inner indices; slices are then added to C in
+//! order. The order of summation depends on the shape alone. Every term is a
+//! plain product (no three-multiplication trick), so the usual bound holds entry
+//! by entry: |fl(C) − C| ≤ γ |A||B| + underflow, γ = γ_{k+⌈k/DEPTH⌉} for real
+//! operands and γ_{2k+⌈k/DEPTH⌉} for complex ones, |·| there the sum of the
+//! parts' moduli (Higham, "Accuracy and Stability of Numerical Algorithms",
+//! 2nd ed., §3). Nothing is scaled: products that overflow or underflow do so.
 
 use super::lanes::Lanes;
 use super::Dense;
 use nalgebra::DMatrix;
 
-/// Terms summed in registers before they are added to C.
+/// Inner indices summed in registers before they are added to C.
 pub const DEPTH: usize = 256;
 
 /// Rows packed at a time: a block of DEPTH × ROWS doubles stays in the second-level cache.
@@ -31,6 +32,7 @@ const TILE: usize = 4;
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(crate) enum Orientation {
     AsStored,
+    /// Transposed, and conjugated if complex.
     Transposed,
 }
 
@@ -41,7 +43,23 @@ pub(crate) enum Update {
     Subtract,
 }
 
-/// One plane of an operand: entry (i, j) as stored is `data[i + j·stride]`.
+/// An operand: entry (i, j) as stored is `re[i + j·stride]`; `im` is empty for
+/// a real one.
+#[derive(Clone, Copy)]
+pub(crate) struct Operand<'a> {
+    pub re: &'a [f64],
+    pub im: &'a [f64],
+    pub stride: usize,
+}
+
+/// The target of both planes; `im` is empty when both operands are real.
+pub(crate) struct SplitTarget<'a> {
+    pub re: &'a mut [f64],
+    pub im: &'a mut [f64],
+    pub stride: usize,
+}
+
+/// One plane of an operand, for products of planes.
 #[derive(Clone, Copy)]
 pub(crate) struct Plane<'a> {
     pub data: &'a [f64],
@@ -49,13 +67,13 @@ pub(crate) struct Plane<'a> {
     pub orientation: Orientation,
 }
 
-/// The target's plane.
+/// One plane of a target.
 pub(crate) struct Target<'a> {
     pub data: &'a mut [f64],
     pub stride: usize,
 }
 
-/// Shape of a product: op(A) is `rows` × `inner`, op(B) is `inner` × `cols`.
+/// Shape of a product: op(A) is `rows` × `inner`, B is `inner` × `cols`.
 #[derive(Clone, Copy)]
 pub(crate) struct Shape {
     pub rows: usize,
@@ -66,13 +84,11 @@ pub(crate) struct Shape {
 /// Room for packed operands, kept between products.
 #[derive(Default)]
 pub(crate) struct Packing {
-    left: Vec<f64>,
-    right: Vec<f64>,
+    left: [Vec<f64>; 2],
+    right: [Vec<f64>; 2],
 }
 
-/// C ← C ± op(A) op(B) on one plane each.
-///
-/// Cost: 2·rows·cols·inner operations.
+/// C ← C ± op(A) op(B) on one plane each. Cost: 2·rows·cols·inner operations.
 pub(crate) fn accumulate(
     shape: Shape,
     update: Update,
@@ -81,91 +97,192 @@ pub(crate) fn accumulate(
     target: &mut Target<'_>,
     packing: &mut Packing,
 ) {
+    let operand = |plane: Plane<'_>| (plane.orientation, plane.stride);
+    let ((left_orientation, left_stride), (right_orientation, right_stride)) =
+        (operand(left), operand(right));
+    let left = Operand {
+        re: left.data,
+        im: &[],
+        stride: left_stride,
+    };
+    let right = Operand {
+        re: right.data,
+        im: &[],
+        stride: right_stride,
+    };
+    let right_strips = match right_orientation {
+        Orientation::AsStored => Strips::OfColumns,
+        Orientation::Transposed => Strips::OfRows,
+    };
+    let target = &mut SplitTarget {
+        re: target.data,
+        im: &mut [],
+        stride: target.stride,
+    };
+    run(
+        shape,
+        update,
+        (left, left_orientation),
+        (right, right_strips),
+        target,
+        packing,
+    );
+}
+
+/// C ← C ± op(A) B on both planes.
+///
+/// Cost: 2·rows·cols·inner operations for real operands, twice that when one
+/// is complex, four times when both are.
+pub(crate) fn accumulate_split(
+    shape: Shape,
+    update: Update,
+    left: (Operand<'_>, Orientation),
+    right: Operand<'_>,
+    target: &mut SplitTarget<'_>,
+    packing: &mut Packing,
+) {
+    run(
+        shape,
+        update,
+        left,
+        (right, Strips::OfColumns),
+        target,
+        packing,
+    );
+}
+
+fn run(
+    shape: Shape,
+    update: Update,
+    (left, orientation): (Operand<'_>, Orientation),
+    (right, right_strips): (Operand<'_>, Strips),
+    target: &mut SplitTarget<'_>,
+    packing: &mut Packing,
+) {
     let Shape { rows, cols, inner } = shape;
-    for depth_start in (0..inner).step_by(DEPTH) {
-        let depth = DEPTH.min(inner - depth_start);
-        let right_strips = cols.div_ceil(TILE);
-        packing.right.resize(right_strips * TILE * depth, 0.0);
-        for (strip, packed) in packing.right.chunks_exact_mut(TILE * depth).enumerate() {
-            // op(B)ᵀ's rows are op(B)'s columns.
-            pack_strip(
+    for start in (0..inner).step_by(DEPTH) {
+        let depth = DEPTH.min(inner - start);
+        for (packed, source) in packing.right.iter_mut().zip([right.re, right.im]) {
+            pack(
                 packed,
-                flipped(right),
-                strip * TILE,
-                cols,
-                depth_start,
-                depth,
+                source,
+                right.stride,
+                right_strips,
+                0..cols,
+                start..start + depth,
             );
         }
-        for row_start in (0..rows).step_by(ROWS) {
-            let row_end = rows.min(row_start + ROWS);
-            let left_strips = (row_end - row_start).div_ceil(TILE);
-            packing.left.resize(left_strips * TILE * depth, 0.0);
-            for (strip, packed) in packing.left.chunks_exact_mut(TILE * depth).enumerate() {
-                pack_strip(
+        let strips = match orientation {
+            Orientation::AsStored => Strips::OfRows,
+            Orientation::Transposed => Strips::OfColumns,
+        };
+        for top in (0..rows).step_by(ROWS) {
+            let bottom = rows.min(top + ROWS);
+            for (packed, source) in packing.left.iter_mut().zip([left.re, left.im]) {
+                pack(
                     packed,
-                    left,
-                    row_start + strip * TILE,
-                    rows,
-                    depth_start,
-                    depth,
+                    source,
+                    left.stride,
+                    strips,
+                    top..bottom,
+                    start..start + depth,
                 );
             }
-            for (strip, right_strip) in packing.right.chunks_exact(TILE * depth).enumerate() {
-                let col = strip * TILE;
-                for (strip, left_strip) in packing.left.chunks_exact(TILE * depth).enumerate() {
-                    let row = row_start + strip * TILE;
-                    let tile = tile_product(left_strip, right_strip);
-                    add_tile(tile, update, target, row, rows, col, cols);
-                }
-            }
-        }
-    }
-}
-
-fn flipped(plane: Plane<'_>) -> Plane<'_> {
-    let orientation = match plane.orientation {
-        Orientation::AsStored => Orientation::Transposed,
-        Orientation::Transposed => Orientation::AsStored,
-    };
-    Plane {
-        orientation,
-        ..plane
-    }
-}
-
-/// Packs rows `row..row+4` of op(A), columns `start..start+depth`, four values
-/// a column; rows past `rows` are zero.
-fn pack_strip(
-    packed: &mut [f64],
-    plane: Plane<'_>,
-    row: usize,
-    rows: usize,
-    start: usize,
-    depth: usize,
-) {
-    let present = TILE.min(rows - row);
-    match plane.orientation {
-        Orientation::AsStored => {
-            for (k, four) in packed.as_chunks_mut::<TILE>().0.iter_mut().enumerate() {
-                let at = row + (start + k) * plane.stride;
-                if present == TILE {
-                    four.copy_from_slice(&plane.data[at..at + TILE]);
+            let strip = TILE * depth;
+            let strip_of = |packed: &Vec<f64>, k: usize| {
+                if packed.is_empty() {
+                    0..0
                 } else {
-                    *four = [0.0; TILE];
-                    four[..present].copy_from_slice(&plane.data[at..at + present]);
+                    k * strip..(k + 1) * strip
+                }
+            };
+            for col in (0..cols).step_by(TILE) {
+                let [r_re, r_im] = &packing.right;
+                let at = col / TILE;
+                let right = [&r_re[strip_of(r_re, at)], &r_im[strip_of(r_im, at)]];
+                for row in (top..bottom).step_by(TILE) {
+                    let [l_re, l_im] = &packing.left;
+                    let at = (row - top) / TILE;
+                    let left = [&l_re[strip_of(l_re, at)], &l_im[strip_of(l_im, at)]];
+                    let place = Place {
+                        row,
+                        rows,
+                        col,
+                        cols,
+                        stride: target.stride,
+                    };
+                    let (re, im) = tile_products(left, orientation, right);
+                    add_tile(re, update, target.re, place);
+                    if let Some(im) = im {
+                        add_tile(im, update, target.im, place);
+                    }
                 }
             }
         }
-        Orientation::Transposed => {
-            if present < TILE {
-                packed.fill(0.0);
+    }
+}
+
+/// Which way the strips of four lie in the stored operand.
+#[derive(Clone, Copy)]
+enum Strips {
+    /// Four rows, along the columns.
+    OfRows,
+    /// Four columns, along the rows.
+    OfColumns,
+}
+
+/// Packs strips of four, `across` them and `along` the inner index; a last
+/// strip that is not full is filled with zeros.
+fn pack(
+    packed: &mut Vec<f64>,
+    source: &[f64],
+    stride: usize,
+    strips: Strips,
+    across: std::ops::Range<usize>,
+    along: std::ops::Range<usize>,
+) {
+    let depth = along.len();
+    if source.is_empty() || depth == 0 {
+        packed.clear();
+        return;
+    }
+    let length = across.len().div_ceil(TILE) * TILE * depth;
+    if packed.capacity() < length {
+        // Every number is written below: what was there need not be copied.
+        *packed = vec![0.0; length];
+    }
+    packed.resize(length, 0.0);
+    for (strip, packed) in packed.chunks_exact_mut(TILE * depth).enumerate() {
+        let first = across.start + strip * TILE;
+        let present = TILE.min(across.end - first);
+        let fours = packed.as_chunks_mut::<TILE>().0;
+        if present < TILE {
+            fours.fill([0.0; TILE]);
+        }
+        match strips {
+            Strips::OfRows => {
+                for (four, k) in fours.iter_mut().zip(along.clone()) {
+                    let at = first + k * stride;
+                    if present == TILE {
+                        four.copy_from_slice(&source[at..at + TILE]);
+                    } else {
+                        four[..present].copy_from_slice(&source[at..at + present]);
+                    }
+                }
             }
-            for r in 0..present {
-                let at = start + (row + r) * plane.stride;
-                let source = &plane.data[at..at + depth];
-                for (four, value) in packed.as_chunks_mut::<TILE>().0.iter_mut().zip(source) {
-                    four[r] = *value;
+            Strips::OfColumns if present == TILE => {
+                let column = |k: usize| &source[(first + k) * stride..][along.clone()];
+                let [a, b, c, d] = [column(0), column(1), column(2), column(3)];
+                for (k, four) in fours.iter_mut().enumerate() {
+                    *four = [a[k], b[k], c[k], d[k]];
+                }
+            }
+            Strips::OfColumns => {
+                for lane in 0..present {
+                    let column = &source[(first + lane) * stride..][along.clone()];
+                    for (four, value) in fours.iter_mut().zip(column) {
+                        four[lane] = *value;
+                    }
                 }
             }
         }
@@ -175,42 +292,102 @@ fn pack_strip(
 /// Columns of the 4 × 4 tile, rows in two register pairs.
 type Tile = [[Lanes; 2]; TILE];
 
+/// The real and, where there is one, the imaginary tile of one product.
 #[inline(always)]
-fn tile_product(left: &[f64], right: &[f64]) -> Tile {
-    let mut tile = [[Lanes::splat(0.0); 2]; TILE];
-    for (a, b) in left
-        .as_chunks::<TILE>()
-        .0
-        .iter()
-        .zip(right.as_chunks::<TILE>().0)
-    {
-        let upper = Lanes::load(&[a[0], a[1]]);
-        let lower = Lanes::load(&[a[2], a[3]]);
-        for (column, value) in tile.iter_mut().zip(b) {
+fn tile_products(
+    left: [&[f64]; 2],
+    orientation: Orientation,
+    right: [&[f64]; 2],
+) -> (Tile, Option<Tile>) {
+    let zero = [[Lanes::splat(0.0); 2]; TILE];
+    let re = add_products(zero, left[0], right[0]);
+    if left[1].is_empty() && right[1].is_empty() {
+        return (re, None);
+    }
+    // The conjugate changes the sign of the left imaginary part only.
+    match orientation {
+        Orientation::AsStored => {
+            let im = add_products(zero, left[0], right[1]);
+            (
+                subtract_products(re, left[1], right[1]),
+                Some(add_products(im, left[1], right[0])),
+            )
+        }
+        Orientation::Transposed => {
+            let im = add_products(zero, left[0], right[1]);
+            (
+                add_products(re, left[1], right[1]),
+                Some(subtract_products(im, left[1], right[0])),
+            )
+        }
+    }
+}
+
+#[inline(always)]
+fn add_products(tile: Tile, left: &[f64], right: &[f64]) -> Tile {
+    each_product(tile, left, right, |sum, product| sum + product)
+}
+
+#[inline(always)]
+fn subtract_products(tile: Tile, left: &[f64], right: &[f64]) -> Tile {
+    each_product(tile, left, right, |sum, product| sum - product)
+}
+
+/// The innermost loop: 16 multiplications and 16 sums a step, on two registers
+/// of the left strip and four broadcast values of the right one.
+#[inline(always)]
+fn each_product(
+    mut tile: Tile,
+    left: &[f64],
+    right: &[f64],
+    join: impl Fn(Lanes, Lanes) -> Lanes,
+) -> Tile {
+    let left = left.as_chunks::<2>().0.as_chunks::<2>().0;
+    for ([upper, lower], values) in left.iter().zip(right.as_chunks::<TILE>().0) {
+        let (upper, lower) = (Lanes::load(upper), Lanes::load(lower));
+        for (column, value) in tile.iter_mut().zip(values) {
             let value = Lanes::splat(*value);
-            column[0] = column[0] + upper * value;
-            column[1] = column[1] + lower * value;
+            column[0] = join(column[0], upper * value);
+            column[1] = join(column[1], lower * value);
         }
     }
     tile
 }
 
-#[inline(always)]
-fn add_tile(
-    tile: Tile,
-    update: Update,
-    target: &mut Target<'_>,
+/// Where a tile belongs in the target.
+#[derive(Clone, Copy)]
+struct Place {
     row: usize,
     rows: usize,
     col: usize,
     cols: usize,
-) {
+    stride: usize,
+}
+
+#[inline(always)]
+fn add_tile(tile: Tile, update: Update, target: &mut [f64], place: Place) {
+    let Place {
+        row,
+        rows,
+        col,
+        cols,
+        stride,
+    } = place;
     let height = TILE.min(rows - row);
-    for (j, column) in tile.iter().enumerate().take(cols - col) {
-        let at = row + (col + j) * target.stride;
-        let [a, b] = column[0].to_array();
-        let [c, d] = column[1].to_array();
-        let destination = &mut target.data[at..at + height];
+    for (j, [upper, lower]) in tile.into_iter().enumerate().take(cols - col) {
+        let at = row + (col + j) * stride;
+        let destination = &mut target[at..at + height];
+        if let ([first, second], []) = destination.as_chunks_mut::<2>() {
+            let (above, below) = (Lanes::load(first), Lanes::load(second));
+            let (above, below) = match update {
+                Update::Add => (above + upper, below + lower),
+                Update::Subtract => (above - upper, below - lower),
+            };
+            above.store(first);
+            below.store(second);
+            continue;
+        }
+        let ([a, b], [c, d]) = (upper.to_array(), lower.to_array());
         for (entry, value) in destination.iter_mut().zip([a, b, c, d]) {
             match update {
                 Update::Add => *entry += value,
@@ -231,7 +408,7 @@ pub fn product(a: &Dense, b: &Dense) -> Dense {
         cols: b.cols(),
         inner: a.cols(),
     };
-    dense_product(shape, a, Orientation::AsStored, b)
+    dense_product(shape, (a, Orientation::AsStored), b)
 }
 
 /// Aᴴ · B. Shapes k × m and k × n.
@@ -245,51 +422,37 @@ pub fn adjoint_product(a: &Dense, b: &Dense) -> Dense {
         cols: b.cols(),
         inner: a.rows(),
     };
-    dense_product(shape, a, Orientation::Transposed, b)
+    dense_product(shape, (a, Orientation::Transposed), b)
 }
 
-fn dense_product(shape: Shape, a: &Dense, orientation: Orientation, b: &Dense) -> Dense {
-    let mut packing = Packing::default();
-    let mut plane = |terms: &[(&DMatrix<f64>, &DMatrix<f64>, Update)]| {
-        let mut result = DMatrix::zeros(shape.rows, shape.cols);
-        for (left, right, update) in terms {
-            let left = Plane {
-                data: left.as_slice(),
-                stride: left.nrows(),
-                orientation,
-            };
-            let right = Plane {
-                data: right.as_slice(),
-                stride: right.nrows(),
-                orientation: Orientation::AsStored,
-            };
-            let mut target = Target {
-                data: result.as_mut_slice(),
-                stride: shape.rows,
-            };
-            accumulate(shape, *update, left, right, &mut target, &mut packing);
-        }
-        result
-    };
-    use Update::{Add, Subtract};
-    // The conjugate changes the sign of A's imaginary part only.
-    let (with, against) = match orientation {
-        Orientation::AsStored => (Add, Subtract),
-        Orientation::Transposed => (Subtract, Add),
-    };
-    match (&a.im, &b.im) {
-        (None, None) => Dense::real(plane(&[(&a.re, &b.re, Add)])),
-        (None, Some(b_im)) => {
-            Dense::complex(plane(&[(&a.re, &b.re, Add)]), plane(&[(&a.re, b_im, Add)]))
-        }
-        (Some(a_im), None) => {
-            Dense::complex(plane(&[(&a.re, &b.re, Add)]), plane(&[(a_im, &b.re, with)]))
-        }
-        (Some(a_im), Some(b_im)) => Dense::complex(
-            plane(&[(&a.re, &b.re, Add), (a_im, b_im, against)]),
-            plane(&[(&a.re, b_im, Add), (a_im, &b.re, with)]),
-        ),
+fn operand(x: &Dense) -> Operand<'_> {
+    let im = x.im.as_ref().map_or(&[][..], |im| im.as_slice());
+    Operand {
+        re: x.re.as_slice(),
+        im,
+        stride: x.rows(),
     }
+}
+
+fn dense_product(shape: Shape, (a, orientation): (&Dense, Orientation), b: &Dense) -> Dense {
+    let mut re = DMatrix::zeros(shape.rows, shape.cols);
+    let complex = a.is_complex() || b.is_complex();
+    let mut im = complex.then(|| DMatrix::zeros(shape.rows, shape.cols));
+    let mut target = SplitTarget {
+        re: re.as_mut_slice(),
+        im: im.as_mut().map_or(&mut [], |im| im.as_mut_slice()),
+        stride: shape.rows,
+    };
+    let packing = &mut Packing::default();
+    accumulate_split(
+        shape,
+        Update::Add,
+        (operand(a), orientation),
+        operand(b),
+        &mut target,
+        packing,
+    );
+    Dense { re, im }
 }
 
 #[cfg(test)]

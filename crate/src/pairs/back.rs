@@ -4,7 +4,9 @@
 //! triangular (compact WY form: Schreiber and Van Loan, SIAM J. Sci. Stat.
 //! Comput. 10, 1989), so that nearly all work is in matrix products.
 
-use crate::matrix::kernels::{accumulate, Orientation, Packing, Plane, Shape, Target, Update};
+use crate::matrix::kernels::{
+    accumulate_split, Operand, Orientation, Packing, Shape, SplitTarget, Update,
+};
 use crate::matrix::Dense;
 use crate::reduce::{solve_adjoint, Reduction, Reflectors};
 use nalgebra::DMatrix;
@@ -86,103 +88,78 @@ fn apply_group(
         room.turned[plane].clear();
         room.turned[plane].resize(width * cols, 0.0);
     }
-    let mut x: [&mut [f64]; 2] = [vectors.re.as_mut_slice(), &mut []];
-    if let Some(im) = &mut vectors.im {
-        x[1] = im.as_mut_slice();
-    }
-    let x_planes = [&x[0][top..], if complex { &x[1][top..] } else { &[] }];
-    // image = Vᴴ X
-    multiply(
+    let Room {
+        v,
+        factor,
+        image,
+        turned,
+        packing,
+    } = room;
+    let (x_re, x_im) = (
+        &mut vectors.re.as_mut_slice()[top..],
+        vectors
+            .im
+            .as_mut()
+            .map_or(&mut [][..], |im| &mut im.as_mut_slice()[top..]),
+    );
+    // image = Vᴴ X, turned = F image, X ← X − V turned
+    accumulate_split(
         Shape {
             rows: width,
             cols,
             inner: rows,
         },
-        (&room.v, rows, Orientation::Transposed),
-        (x_planes, order),
-        (&mut room.image, width),
         Update::Add,
-        &mut room.packing,
+        (operand(v, rows), Orientation::Transposed),
+        Operand {
+            re: x_re,
+            im: x_im,
+            stride: order,
+        },
+        &mut target(image, width),
+        packing,
     );
-    // turned = F image
-    let image = [room.image[0].as_slice(), room.image[1].as_slice()];
-    multiply(
+    accumulate_split(
         Shape {
             rows: width,
             cols,
             inner: width,
         },
-        (&room.factor, width, Orientation::AsStored),
-        (image, width),
-        (&mut room.turned, width),
         Update::Add,
-        &mut room.packing,
+        (operand(factor, width), Orientation::AsStored),
+        operand(image, width),
+        &mut target(turned, width),
+        packing,
     );
-    // X ← X − V turned
-    let turned = [room.turned[0].as_slice(), room.turned[1].as_slice()];
-    let [x_re, x_im] = x;
-    let mut below = [
-        &mut x_re[top..],
-        if complex { &mut x_im[top..] } else { &mut [] },
-    ];
-    multiply(
+    accumulate_split(
         Shape {
             rows,
             cols,
             inner: width,
         },
-        (&room.v, rows, Orientation::AsStored),
-        (turned, width),
-        (&mut below, order),
         Update::Subtract,
-        &mut room.packing,
+        (operand(v, rows), Orientation::AsStored),
+        operand(turned, width),
+        &mut SplitTarget {
+            re: x_re,
+            im: x_im,
+            stride: order,
+        },
+        packing,
     );
 }
 
-/// C ← C ± op(A) B by planes; `A` is conjugated when transposed.
-fn multiply<C: AsMut<[f64]>>(
-    shape: Shape,
-    (a, a_stride, orientation): (&[Vec<f64>; 2], usize, Orientation),
-    (b, b_stride): ([&[f64]; 2], usize),
-    (c, c_stride): (&mut [C; 2], usize),
-    update: Update,
-    packing: &mut Packing,
-) {
-    let opposite = match update {
-        Update::Add => Update::Subtract,
-        Update::Subtract => Update::Add,
-    };
-    let (with, against) = match orientation {
-        Orientation::AsStored => (update, opposite),
-        Orientation::Transposed => (opposite, update),
-    };
-    let terms: &[(usize, usize, usize, Update)] = if b[1].is_empty() {
-        &[(0, 0, 0, update)]
-    } else {
-        &[
-            (0, 0, 0, update),
-            (0, 1, 1, against),
-            (1, 0, 1, update),
-            (1, 1, 0, with),
-        ]
-    };
-    for (target, left, right, update) in terms {
-        let left = Plane {
-            data: &a[*left],
-            stride: a_stride,
-            orientation,
-        };
-        let right = Plane {
-            data: b[*right],
-            stride: b_stride,
-            orientation: Orientation::AsStored,
-        };
-        let mut target = Target {
-            data: c[*target].as_mut(),
-            stride: c_stride,
-        };
-        accumulate(shape, *update, left, right, &mut target, packing);
+fn operand(planes: &[Vec<f64>; 2], stride: usize) -> Operand<'_> {
+    Operand {
+        re: &planes[0],
+        im: &planes[1],
+        stride,
     }
+}
+
+fn target(planes: &mut [Vec<f64>; 2], stride: usize) -> SplitTarget<'_> {
+    let [re, im] = planes;
+    SplitTarget { re, im, stride }
 }
 
 /// V as a dense trapezoid: zero above each leading 1.

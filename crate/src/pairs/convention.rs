@@ -1,6 +1,6 @@
 //! The phase convention of vectors; see the module above.
 
-use crate::matrix::norms::length;
+use crate::matrix::norms::{largest, length};
 use crate::matrix::Dense;
 
 /// Moduli within this factor of the largest one count as tied with it. Far
@@ -24,9 +24,7 @@ pub(super) fn fix_phases(vectors: &mut Dense) {
 }
 
 fn fix_real(column: &mut [f64]) {
-    let largest = column
-        .iter()
-        .fold(0.0_f64, |largest, x| largest.max(x.abs()));
+    let largest = largest(column.iter());
     let pivot = column.iter().find(|x| x.abs() >= largest * TIE);
     if pivot.is_some_and(|x| *x < 0.0) {
         column.iter_mut().for_each(|x| *x = -*x);
@@ -35,7 +33,7 @@ fn fix_real(column: &mut [f64]) {
 
 fn fix_complex(re: &mut [f64], im: &mut [f64]) {
     let squares = || re.iter().zip(im.iter()).map(|(x, y)| x * x + y * y);
-    let largest = squares().fold(0.0_f64, f64::max);
+    let largest = squares().fold(0.0, |largest, x| if x > largest { x } else { largest });
     let Some(at) = squares().position(|square| square >= largest * TIE * TIE) else {
         return;
     };

@@ -91,11 +91,19 @@ pub(super) fn vectors(
 
 type Column = [Lanes; STRIP / 2];
 
-fn load(column: &[f64; STRIP]) -> Column {
-    let pairs = column.as_chunks::<2>().0;
-    std::array::from_fn(|k| Lanes::load(&pairs[k]))
+/// Written out, so that a column stays in registers.
+#[inline(always)]
+fn each(mut f: impl FnMut(usize) -> Lanes) -> Column {
+    [f(0), f(1), f(2), f(3)]
 }
 
+#[inline(always)]
+fn load(column: &[f64; STRIP]) -> Column {
+    let pairs = column.as_chunks::<2>().0;
+    each(|k| Lanes::load(&pairs[k]))
+}
+
+#[inline(always)]
 fn store(values: Column, column: &mut [f64; STRIP]) {
     for (value, pair) in values.iter().zip(column.as_chunks_mut::<2>().0) {
         value.store(pair);
@@ -142,7 +150,7 @@ fn apply(strip: &mut [f64], rotations: &[Rotation], chains: &[Chain]) {
 fn turn(left: Column, right: Column, rotation: Rotation) -> (Column, Column) {
     let (c, s) = (Lanes::splat(rotation.cosine), Lanes::splat(rotation.sine));
     (
-        std::array::from_fn(|k| left[k] * c + right[k] * s),
-        std::array::from_fn(|k| right[k] * c - left[k] * s),
+        each(|k| left[k] * c + right[k] * s),
+        each(|k| right[k] * c - left[k] * s),
     )
 }

@@ -17,8 +17,8 @@ mod tests;
 
 pub(crate) use metric::solve_adjoint;
 pub use metric::{cholesky, CholeskyError};
-pub(crate) use run::dot;
 pub use run::ReductionRun;
+pub(crate) use run::{dot, Checkpoint};
 
 use crate::control::{Control, Flow, Stage};
 use crate::ledger::{Basis, Event, Listening, Recorder, Totals};
@@ -49,12 +49,9 @@ impl Tridiagonal {
             k.and_then(|k| self.off_diagonal.get(k))
                 .map_or(0.0, |e| e.abs())
         };
-        self.diagonal
-            .iter()
-            .enumerate()
-            .fold(0.0, |norm: f64, (k, d)| {
-                norm.max(off(k.checked_sub(1)) + d.abs() + off(Some(k)))
-            })
+        let sums = self.diagonal.iter().enumerate();
+        let sums = sums.map(|(k, d)| off(k.checked_sub(1)) + d.abs() + off(Some(k)));
+        sums.fold(0.0, |norm, sum| if sum > norm { sum } else { norm })
     }
 }
 
@@ -277,7 +274,9 @@ fn check(rounded: &Rounded) -> Result<usize, ReduceError> {
                         col: at / order,
                     });
                 }
-                largest = largest.max(x.abs());
+                if x.abs() > largest {
+                    largest = x.abs();
+                }
             }
         }
         if largest != 0.0 && !SCALED.contains(&largest) {
@@ -371,8 +370,7 @@ impl Gauge {
         if self.listening == Listening::No {
             return Totals::default();
         }
-        let trace = run.trace();
-        let band = run.band_norm();
+        let (trace, band) = run.band();
         let near_end = run.columns_done() + MEASURED_TAIL >= run.order();
         let measured = near_end || self.readings.is_multiple_of(MEASURED_EVERY);
         self.readings += 1;
@@ -402,9 +400,10 @@ impl Totals {
     pub(crate) fn of_matrix(matrix: &Dense) -> Self {
         let run = ReductionRun::new(matrix);
         let balance = run.norm_outside_band();
+        let (trace, band) = run.band();
         Self {
-            trace: run.trace(),
-            frobenius: length(run.band_norm(), balance),
+            trace,
+            frobenius: length(band, balance),
             balance,
             basis: Basis::Measured,
         }

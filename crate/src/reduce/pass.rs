@@ -58,6 +58,19 @@ pub(super) fn updated_complex(
     (entry.0 - re, entry.1 - im)
 }
 
+#[inline(always)]
+fn updated_complex_lanes(
+    entry: (Lanes, Lanes),
+    v: (Lanes, Lanes),
+    w: (Lanes, Lanes),
+    v_col: (Lanes, Lanes),
+    w_col: (Lanes, Lanes),
+) -> (Lanes, Lanes) {
+    let re = (v.0 * w_col.0 + v.1 * w_col.1) + (w.0 * v_col.0 + w.1 * v_col.1);
+    let im = (v.1 * w_col.0 - v.0 * w_col.1) + (w.1 * v_col.0 - w.0 * v_col.1);
+    (entry.0 - re, entry.1 - im)
+}
+
 /// The real pass; see the module. Cost: 8 operations an entry of the triangle.
 pub(super) fn real(
     a: &mut [f64],
@@ -211,10 +224,8 @@ fn complex_column(a: Planes<'_>, col: usize, v: &Split, w: &Split, x: &Split, y:
     for k in 0..pairs {
         let v_k = (Lanes::load(&v_re[k]), Lanes::load(&v_im[k]));
         let w_k = (Lanes::load(&w_re[k]), Lanes::load(&w_im[k]));
-        let re = Lanes::load(&a_re[k])
-            - ((v_k.0 * w_col.0 + v_k.1 * w_col.1) + (w_k.0 * v_col.0 + w_k.1 * v_col.1));
-        let im = Lanes::load(&a_im[k])
-            - ((v_k.1 * w_col.0 - v_k.0 * w_col.1) + (w_k.1 * v_col.0 - w_k.0 * v_col.1));
+        let entry = (Lanes::load(&a_re[k]), Lanes::load(&a_im[k]));
+        let (re, im) = updated_complex_lanes(entry, v_k, w_k, v_col, w_col);
         re.store(&mut a_re[k]);
         im.store(&mut a_im[k]);
         (Lanes::load(&y_re[k]) + (re * x_col.0 - im * x_col.1)).store(&mut y_re[k]);
@@ -225,4 +236,71 @@ fn complex_column(a: Planes<'_>, col: usize, v: &Split, w: &Split, x: &Split, y:
     }
     y.re[col] += dot_re + sum_re.sum();
     y.im[col] += dot_im + sum_im.sum();
+}
+
+/// Σ |entry|² over the entries of a column two and more below the diagonal, the
+/// update by v and w applied on the fly.
+pub(super) fn squares_below_band(
+    re: &[f64],
+    im: &[f64],
+    stride: usize,
+    col: usize,
+    v: &Split,
+    w: &Split,
+) -> f64 {
+    let base = col * stride;
+    let mut below = col + 2;
+    let mut sum = 0.0;
+    if below % 2 == 1 && below < stride {
+        let (entry_re, entry_im) = if im.is_empty() {
+            (
+                updated(
+                    re[base + below],
+                    v.re[below],
+                    w.re[below],
+                    v.re[col],
+                    w.re[col],
+                ),
+                0.0,
+            )
+        } else {
+            let at = |s: &Split, i: usize| (s.re[i], s.im[i]);
+            let entry = (re[base + below], im[base + below]);
+            updated_complex(entry, at(v, below), at(w, below), at(v, col), at(w, col))
+        };
+        sum += entry_re * entry_re + entry_im * entry_im;
+        below += 1;
+    }
+    if below >= stride {
+        return sum;
+    }
+    let a_re = re[base + below..base + stride].as_chunks::<2>().0;
+    let count = a_re.len();
+    let v_re = &v.re[below..].as_chunks::<2>().0[..count];
+    let w_re = &w.re[below..].as_chunks::<2>().0[..count];
+    let (v_col, w_col) = (Lanes::splat(v.re[col]), Lanes::splat(w.re[col]));
+    let mut squares = Lanes::splat(0.0);
+    if im.is_empty() {
+        for k in 0..count {
+            let (v_k, w_k) = (Lanes::load(&v_re[k]), Lanes::load(&w_re[k]));
+            let entry = updated_lanes(Lanes::load(&a_re[k]), v_k, w_k, v_col, w_col);
+            squares = squares + entry * entry;
+        }
+        return sum + squares.sum();
+    }
+    let a_im = &im[base + below..base + stride].as_chunks::<2>().0[..count];
+    let v_im = &v.im[below..].as_chunks::<2>().0[..count];
+    let w_im = &w.im[below..].as_chunks::<2>().0[..count];
+    let (v_col, w_col) = (
+        (v_col, Lanes::splat(v.im[col])),
+        (w_col, Lanes::splat(w.im[col])),
+    );
+    for k in 0..count {
+        let entry = (Lanes::load(&a_re[k]), Lanes::load(&a_im[k]));
+        let v_k = (Lanes::load(&v_re[k]), Lanes::load(&v_im[k]));
+        let w_k = (Lanes::load(&w_re[k]), Lanes::load(&w_im[k]));
+        let (re, im) = updated_complex_lanes(entry, v_k, w_k, v_col, w_col);
+        squares = squares + (re * re + im * im);
+    }
+    sum + squares.sum()
 }

@@ -6,7 +6,8 @@
 
 use super::pass::{self, updated, updated_complex, Planes, Split};
 use super::reflector::{self, Formed};
-use crate::matrix::norms::norm2;
+use crate::matrix::lanes::Lanes;
+use crate::matrix::norms::{norm2, power_of_two};
 use crate::matrix::Dense;
 use nalgebra::DMatrix;
 
@@ -31,6 +32,9 @@ pub struct ReductionRun {
     off_re: Vec<f64>,
     off_im: Vec<f64>,
     scalars: Vec<f64>,
+    /// Trace and squares of the band over the columns done.
+    settled_trace: f64,
+    settled_squares: f64,
 }
 
 /// The parts of a finished reduction.
@@ -69,6 +73,18 @@ impl ReductionRun {
             off_re: Vec::with_capacity(order),
             off_im: Vec::with_capacity(order),
             scalars: Vec::with_capacity(order),
+            settled_trace: 0.0,
+            settled_squares: 0.0,
+        }
+    }
+
+    /// Takes column `col`, just done, into the sums over the settled band.
+    fn settle(&mut self, col: usize) {
+        let diagonal = self.diagonal[col];
+        self.settled_trace += diagonal;
+        self.settled_squares += diagonal * diagonal;
+        if let (Some(re), Some(im)) = (self.off_re.get(col), self.off_im.get(col)) {
+            self.settled_squares += 2.0 * (re * re + im * im);
         }
     }
 
@@ -94,6 +110,7 @@ impl ReductionRun {
         self.diagonal.push(self.re[col * self.stride + col]);
         self.done += 1;
         if self.done == order {
+            self.settle(col);
             return;
         }
         let start = col * self.stride + col + 1;
@@ -107,6 +124,7 @@ impl ReductionRun {
         self.off_re.push(formed.image_re);
         self.off_im.push(formed.image_im);
         self.scalars.push(formed.scalar);
+        self.settle(col);
         if self.done + 1 < order {
             self.pass(col + 1, formed);
         }
@@ -273,17 +291,30 @@ impl ReductionRun {
         }
     }
 
-    /// Sum of the diagonal as it stands. Cost: O(n).
-    pub(crate) fn trace(&self) -> f64 {
-        let settled: f64 = self.diagonal.iter().sum();
-        (self.done..self.order).fold(settled, |sum, col| sum + self.trailing(col, col).0)
+    /// Trace, and √(Σ diagonal² + 2 Σ |off-diagonal|²) over the tridiagonal
+    /// band, as they stand. Cost: O(n).
+    pub(crate) fn band(&self) -> (f64, f64) {
+        let (mut trace, mut squares) = (self.settled_trace, self.settled_squares);
+        for col in self.done..self.order {
+            let diagonal = self.trailing(col, col).0;
+            trace += diagonal;
+            squares += diagonal * diagonal;
+            if col + 1 < self.order {
+                let (re, im) = self.trailing(col + 1, col);
+                squares += 2.0 * (re * re + im * im);
+            }
+        }
+        let norm = if squares > SMALLEST_PLAIN {
+            squares.sqrt()
+        } else {
+            norm2(self.band_parts().iter())
+        };
+        (trace, norm)
     }
 
-    /// √(Σ diagonal² + 2 Σ |off-diagonal|²) over the tridiagonal band as it
-    /// stands. Cost: O(n).
-    pub(crate) fn band_norm(&self) -> f64 {
-        let mut parts = Vec::with_capacity(5 * self.order);
-        parts.extend_from_slice(&self.diagonal);
+    /// The band's entries, each off-diagonal part twice.
+    fn band_parts(&self) -> Vec<f64> {
+        let mut parts = self.diagonal.clone();
         for (re, im) in self.off_re.iter().zip(&self.off_im) {
             parts.extend([*re, *re, *im, *im]);
         }
@@ -294,29 +325,56 @@ impl ReductionRun {
                 parts.extend([re, re, im, im]);
             }
         }
-        norm2(parts.iter())
+        parts
     }
 
     /// Frobenius norm outside the tridiagonal band, summed entry by entry.
-    /// Cost: O(m²) for a trailing matrix of order m.
+    /// Cost: 6 operations an entry (18 complex) of the trailing triangle.
     pub(crate) fn norm_outside_band(&self) -> f64 {
-        let column_norms: Vec<f64> = (self.done..self.order)
-            .map(|col| {
-                let parts: Vec<f64> = (col + 2..self.order)
-                    .flat_map(|row| {
-                        let (re, im) = self.trailing(row, col);
-                        [re, im]
-                    })
-                    .collect();
-                norm2(parts.iter())
-            })
-            .collect();
-        norm2(column_norms.iter()) * std::f64::consts::SQRT_2
+        let zeros;
+        let (v, w) = match &self.pending {
+            Some((v, w)) => (v, w),
+            None => {
+                zeros = Split::zeros(self.stride, self.is_complex());
+                (&zeros, &zeros)
+            }
+        };
+        let squares = (self.done..self.order)
+            .map(|col| pass::squares_below_band(&self.re, &self.im, self.stride, col, v, w))
+            .fold(0.0, |sum, square| sum + square);
+        let norm = if squares > SMALLEST_PLAIN {
+            squares.sqrt()
+        } else {
+            let parts: Vec<f64> = (self.done..self.order)
+                .flat_map(|col| (col + 2..self.order).map(move |row| (row, col)))
+                .map(|(row, col)| self.trailing(row, col))
+                .flat_map(|(re, im)| [re, im])
+                .collect();
+            norm2(parts.iter())
+        };
+        norm * std::f64::consts::SQRT_2
     }
 
-    /// Bytes held, for the memory figures.
-    pub(crate) fn approx_bytes(&self) -> usize {
-        8 * (self.re.len() + self.im.len() + 8 * self.order)
+    /// What is needed to go on from here: the trailing triangle, packed.
+    pub(crate) fn checkpoint(&self) -> Checkpoint {
+        let packed = |plane: &[f64]| -> Vec<f64> {
+            let columns = plane.chunks_exact(self.stride.max(1)).enumerate();
+            columns
+                .take(self.order)
+                .skip(self.done)
+                .flat_map(|(col, column)| &column[col..self.order])
+                .copied()
+                .collect()
+        };
+        Checkpoint {
+            order: self.order,
+            re: packed(&self.re),
+            im: packed(&self.im),
+            pending: self.pending.clone(),
+            diagonal: self.diagonal.clone(),
+            off_re: self.off_re.clone(),
+            off_im: self.off_im.clone(),
+        }
     }
 
     pub(crate) fn finish(self) -> Finished {
@@ -332,6 +390,69 @@ impl ReductionRun {
     }
 }
 
+/// A state of a reduction, without the reflectors before it; see
+/// [`ReductionRun::checkpoint`]. About n²/2 doubles at the start (n² complex).
+#[derive(Clone, Debug)]
+pub(crate) struct Checkpoint {
+    order: usize,
+    re: Vec<f64>,
+    im: Vec<f64>,
+    pending: Option<(Split, Split)>,
+    diagonal: Vec<f64>,
+    off_re: Vec<f64>,
+    off_im: Vec<f64>,
+}
+
+impl Checkpoint {
+    /// A run that goes on from here.
+    pub fn resume(&self) -> ReductionRun {
+        let (order, done) = (self.order, self.diagonal.len());
+        let stride = order + order % 2;
+        let complex = !self.im.is_empty();
+        let unpacked = |packed: &[f64]| {
+            let mut plane = vec![0.0; stride * stride];
+            let mut rest = packed;
+            for col in done..order {
+                let (column, later) = rest.split_at(order - col);
+                plane[col * stride + col..col * stride + order].copy_from_slice(column);
+                rest = later;
+            }
+            plane
+        };
+        let mut run = ReductionRun {
+            order,
+            stride,
+            re: unpacked(&self.re),
+            im: if complex {
+                unpacked(&self.im)
+            } else {
+                Vec::new()
+            },
+            done,
+            pending: self.pending.clone(),
+            spare: [Split::zeros(stride, complex), Split::zeros(stride, complex)],
+            diagonal: self.diagonal.clone(),
+            off_re: self.off_re.clone(),
+            off_im: self.off_im.clone(),
+            scalars: vec![0.0; done],
+            settled_trace: 0.0,
+            settled_squares: 0.0,
+        };
+        for col in 0..done {
+            run.settle(col);
+        }
+        run
+    }
+
+    /// Bytes held.
+    pub fn approx_bytes(&self) -> usize {
+        8 * (self.re.len() + self.im.len() + 7 * self.order)
+    }
+}
+
+/// Below this a sum of squares may have lost terms to underflow (2⁻⁹⁰⁰).
+const SMALLEST_PLAIN: f64 = power_of_two(-900);
+
 /// See [`ReductionRun::last_reflector`].
 pub(crate) struct LastReflector<'a> {
     pub column: usize,
@@ -341,19 +462,22 @@ pub(crate) struct LastReflector<'a> {
     pub image: (f64, f64),
 }
 
-/// Inner product in four interleaved sums, so that it vectorises in a fixed order.
+/// Inner product in four interleaved sums, added in a fixed order.
 pub(crate) fn dot(x: &[f64], y: &[f64]) -> f64 {
-    let (x_fours, x_rest) = x.as_chunks::<4>();
-    let (y_fours, y_rest) = y.as_chunks::<4>();
-    let mut sums = [0.0; 4];
+    let ((x_pairs, x_rest), (y_pairs, y_rest)) = (x.as_chunks::<2>(), y.as_chunks::<2>());
+    let ((x_fours, x_two), (y_fours, y_two)) = (x_pairs.as_chunks::<2>(), y_pairs.as_chunks::<2>());
+    let mut even = Lanes::splat(0.0);
+    let mut odd = Lanes::splat(0.0);
     for (x, y) in x_fours.iter().zip(y_fours) {
-        for lane in 0..4 {
-            sums[lane] += x[lane] * y[lane];
-        }
+        even = even + Lanes::load(&x[0]) * Lanes::load(&y[0]);
+        odd = odd + Lanes::load(&x[1]) * Lanes::load(&y[1]);
     }
-    let rest: f64 = x_rest
+    if let ([x], [y]) = (x_two, y_two) {
+        even = even + Lanes::load(x) * Lanes::load(y);
+    }
+    let rest = x_rest
         .iter()
         .zip(y_rest)
         .fold(0.0, |sum, (x, y)| sum + x * y);
-    ((sums[0] + sums[2]) + (sums[1] + sums[3])) + rest
+    (even + odd).sum() + rest
 }

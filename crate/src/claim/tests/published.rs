@@ -111,7 +111,7 @@ fn gregory_karney() {
     );
 }
 
-/// W. Givens's and T. S. Wilson's matrix (Morris, Phil. Mag. 1946): determinant
+/// T. S. Wilson's matrix (Morris, Philosophical Magazine 1946): determinant
 /// 1, eigenvalues 0.01015, 0.8431, 3.8581, 30.2887, condition 2984.
 #[test]
 fn wilson() {

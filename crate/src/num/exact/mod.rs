@@ -15,6 +15,7 @@ mod irrational;
 mod rounding;
 mod terms;
 mod text;
+mod wide;
 
 #[cfg(test)]
 mod tests;

@@ -8,6 +8,7 @@
 //! multiplication rounds once. Its remainder is itself a double, which gives
 //! the second word of the expansion without big integers.
 
+use super::wide::{self, round_binary};
 use super::{DyadicInterval, ExactReal};
 use dashu_base::{Abs, BitTest, DivRem, Signed, UnsignedAbs};
 use dashu_int::{IBig, UBig};
@@ -32,6 +33,22 @@ impl Expansion {
         lo: 0.0,
         bound: 0.0,
     };
+
+    /// All three parts times 2^−scale, if that is exact for each.
+    fn scaled_exactly(self, scale: i32) -> Option<Self> {
+        let part = |x: f64| {
+            if x == 0.0 {
+                Some(0.0)
+            } else {
+                scaled_exactly(x, scale)
+            }
+        };
+        Some(Self {
+            hi: part(self.hi)?,
+            lo: part(self.lo)?,
+            bound: part(self.bound)?,
+        })
+    }
 }
 
 /// Powers of ten that are exact doubles.
@@ -52,19 +69,15 @@ impl ExactReal {
             if *digits == 0 {
                 return 0.0;
             }
-            if let Some(hi) = clinger(*digits, *exponent) {
-                if let Some(y) = scaled_exactly(hi, scale) {
-                    return y;
-                }
+            let near = clinger(*digits, *exponent).or_else(|| wide::nearest(*digits, *exponent));
+            if let Some(y) = near.and_then(|near| scaled_exactly(near, scale)) {
+                return y;
             }
         }
         match self {
             Self::Binary(x) if scale == 0 => *x,
             Self::Irrational(x) => nearest_by_enclosure(|bits| x.enclose(bits), scale),
-            _ => {
-                let r = self.rational().unwrap_or(RBig::ZERO);
-                nearest_ratio(r.numerator(), r.denominator(), scale)
-            }
+            _ => Fraction::of(self).scaled(-i64::from(scale)).nearest(),
         }
     }
 
@@ -75,20 +88,23 @@ impl ExactReal {
             if *digits == 0 {
                 return Expansion::ZERO;
             }
-            if let Some(found) = clinger_expansion(*digits, *exponent, scale) {
+            let found = clinger_expansion(*digits, *exponent)
+                .or_else(|| wide::expansion(*digits, *exponent));
+            if let Some(found) = found.and_then(|found| found.scaled_exactly(scale)) {
                 return found;
             }
         }
+        let power = -i64::from(scale);
         match self {
             Self::Irrational(x) => {
                 let around = x.enclose(200);
-                let hi = self.nearest(scale);
-                expansion_of(hi, &around.lower_ratio(), &around.upper_ratio(), scale)
+                let low = Fraction::dyadic(&around.lower, around.exponent + power);
+                let high = Fraction::dyadic(&around.upper, around.exponent + power);
+                expansion_of(self.nearest(scale), &low, &high)
             }
             _ => {
-                let r = self.rational().unwrap_or(RBig::ZERO);
-                let hi = nearest_ratio(r.numerator(), r.denominator(), scale);
-                expansion_of(hi, &r, &r, scale)
+                let y = Fraction::of(self).scaled(power);
+                expansion_of(y.nearest(), &y, &y)
             }
         }
     }
@@ -121,46 +137,30 @@ fn scaled_exactly(x: f64, scale: i32) -> Option<f64> {
 
 /// The expansion in Clinger's fast case: the remainder of a correctly rounded
 /// product or quotient is a double when nothing underflows.
-fn clinger_expansion(digits: i64, exponent: i16, scale: i32) -> Option<Expansion> {
+fn clinger_expansion(digits: i64, exponent: i16) -> Option<Expansion> {
     let hi = clinger(digits, exponent)?;
     let d = digits as f64;
     if exponent == 0 {
         return Some(Expansion {
-            hi: scaled_exactly(hi, scale)?,
-            lo: 0.0,
-            bound: 0.0,
+            hi,
+            ..Expansion::ZERO
         });
     }
     let power = EXACT_POWERS[usize::from(exponent.unsigned_abs())];
-    let (lo, bound) = if exponent > 0 {
-        (product_error(d, power, hi), 0.0)
-    } else {
-        // d − hi·10^k, exactly: the product's head cancels against d, and its
-        // tail is what is left.
-        let head = hi * power;
-        let remainder = (d - head) - product_error(hi, power, head);
-        // |lo − y| ≤ u|lo|: half a unit in the last place of lo.
-        let lo = remainder / power;
-        (
-            lo,
-            if remainder == 0.0 {
-                0.0
-            } else {
-                lo.abs() * (f64::EPSILON / 2.0)
-            },
-        )
-    };
-    let scaled_or_zero = |x: f64| {
-        if x == 0.0 {
-            Some(0.0)
-        } else {
-            scaled_exactly(x, scale)
-        }
-    };
+    if exponent > 0 {
+        let lo = product_error(d, power, hi);
+        return Some(Expansion { hi, lo, bound: 0.0 });
+    }
+    // d − hi·10^k, exactly: the product's head cancels against d, and its tail
+    // is what is left.
+    let head = hi * power;
+    let remainder = (d - head) - product_error(hi, power, head);
+    // |lo − y| ≤ u|lo|: half a unit in the last place of lo.
+    let lo = remainder / power;
     Some(Expansion {
-        hi: scaled_exactly(hi, scale)?,
-        lo: scaled_or_zero(lo)?,
-        bound: scaled_or_zero(bound)?,
+        hi,
+        lo,
+        bound: lo.abs() * (f64::EPSILON / 2.0),
     })
 }
 
@@ -179,7 +179,7 @@ fn product_error(a: f64, b: f64, head: f64) -> f64 {
 }
 
 /// Mantissa and power of two of a finite double.
-fn decode(x: f64) -> (i64, i32) {
+pub(super) fn decode(x: f64) -> (i64, i32) {
     let bits = x.to_bits();
     let raw = ((bits >> 52) & 0x7ff) as i32;
     let fraction = (bits & ((1 << 52) - 1)) as i64;
@@ -210,58 +210,126 @@ fn times_power_of_two(r: RBig, power: i32) -> RBig {
     }
 }
 
-/// The double nearest to (numerator/denominator)·2^−scale.
-///
-/// Forms a quotient of at least 65 bits whose last bit also stands for
-/// everything below it, and rounds that once.
-fn nearest_ratio(numerator: &IBig, denominator: &UBig, scale: i32) -> f64 {
-    let magnitude = numerator.clone().unsigned_abs();
-    if magnitude.is_zero() {
-        return 0.0;
-    }
-    let shift = 66 + denominator.bit_len() as i64 - magnitude.bit_len() as i64;
-    let (quotient, remainder) = if shift >= 0 {
-        (magnitude << shift as usize).div_rem(denominator.clone())
-    } else {
-        magnitude.div_rem(denominator.clone() << (-shift) as usize)
-    };
-    let sticky = u128::from(!remainder.is_zero());
-    // 65 to 67 bits by the choice of the shift.
-    let quotient = u128::try_from(quotient).unwrap_or(u128::MAX) | sticky;
-    let x = round_binary(quotient, -shift - i64::from(scale));
-    if numerator.is_negative() {
-        -x
-    } else {
-        x
-    }
+/// top/bottom, not reduced: a common divisor costs more to find than to carry.
+struct Fraction {
+    top: IBig,
+    bottom: UBig,
 }
 
-/// q·2^power to nearest, ties to even; the lowest bit of q may be sticky as
-/// long as q has 65 bits or more.
-fn round_binary(q: u128, power: i64) -> f64 {
-    let length = i64::from(128 - q.leading_zeros());
-    let top = power + length - 1;
-    if top > 1023 {
-        return f64::INFINITY;
+impl Fraction {
+    /// A number that is known as a ratio.
+    fn of(x: &ExactReal) -> Self {
+        match x {
+            ExactReal::Decimal { digits, exponent } => {
+                let power = UBig::from(10u8).pow(usize::from(exponent.unsigned_abs()));
+                let digits = IBig::from(*digits);
+                if *exponent >= 0 {
+                    Self {
+                        top: digits * IBig::from(power),
+                        bottom: UBig::ONE,
+                    }
+                } else {
+                    Self {
+                        top: digits,
+                        bottom: power,
+                    }
+                }
+            }
+            ExactReal::Binary(x) if x.is_finite() => {
+                let (mantissa, exponent) = decode(*x);
+                Self::dyadic(&IBig::from(mantissa), i64::from(exponent))
+            }
+            ExactReal::Rational(r) => Self {
+                top: r.numerator().clone(),
+                bottom: r.denominator().clone(),
+            },
+            ExactReal::Binary(_) | ExactReal::Irrational(_) => Self {
+                top: IBig::ZERO,
+                bottom: UBig::ONE,
+            },
+        }
     }
-    let keep = if top < -1022 { top + 1075 } else { 53 };
-    if keep < 0 {
-        return 0.0;
+
+    /// value·2^exponent.
+    fn dyadic(value: &IBig, exponent: i64) -> Self {
+        Self {
+            top: value.clone(),
+            bottom: UBig::ONE,
+        }
+        .scaled(exponent)
     }
-    let drop = (length - keep) as u32;
-    let kept = if drop > 127 { 0 } else { q >> drop };
-    let rest = q - (kept << drop.min(127));
-    let half = 1u128 << (drop - 1);
-    let up = rest > half || (rest == half && kept % 2 == 1);
-    let mantissa = kept as u64 + u64::from(up);
-    if top < -1022 {
-        // A carry into bit 52 is the least normal number, as it should be.
-        return f64::from_bits(mantissa);
+
+    /// Times 2^power.
+    fn scaled(self, power: i64) -> Self {
+        let steps = power.unsigned_abs() as usize;
+        if power >= 0 {
+            Self {
+                top: self.top << steps,
+                bottom: self.bottom,
+            }
+        } else {
+            Self {
+                top: self.top,
+                bottom: self.bottom << steps,
+            }
+        }
     }
-    // The hidden bit adds one to the exponent field, and so does a carry.
-    let field = ((top + 1022) as u64) << 52;
-    let bits = field + mantissa;
-    f64::from_bits(bits)
+
+    /// The rest after taking away a finite double.
+    fn minus(&self, x: f64) -> Self {
+        let (mantissa, exponent) = decode(x);
+        let taken = IBig::from(self.bottom.clone()) * IBig::from(mantissa);
+        let steps = exponent.unsigned_abs() as usize;
+        if exponent >= 0 {
+            Self {
+                top: &self.top - (taken << steps),
+                bottom: self.bottom.clone(),
+            }
+        } else {
+            Self {
+                top: (&self.top << steps) - taken,
+                bottom: &self.bottom << steps,
+            }
+        }
+    }
+
+    /// The nearest double: a quotient of at least 65 bits, whose last bit also
+    /// stands for everything below it, is rounded once.
+    fn nearest(&self) -> f64 {
+        let magnitude = self.top.clone().unsigned_abs();
+        if magnitude.is_zero() {
+            return 0.0;
+        }
+        let shift = 66 + self.bottom.bit_len() as i64 - magnitude.bit_len() as i64;
+        let (quotient, remainder) = if shift >= 0 {
+            (magnitude << shift as usize).div_rem(&self.bottom)
+        } else {
+            magnitude.div_rem(&self.bottom << (-shift) as usize)
+        };
+        let sticky = u128::from(!remainder.is_zero());
+        // 65 to 67 bits by the choice of the shift.
+        let quotient = u128::try_from(quotient).unwrap_or(u128::MAX) | sticky;
+        let x = round_binary(quotient, -shift);
+        if self.top.is_negative() {
+            -x
+        } else {
+            x
+        }
+    }
+
+    /// The least double that is not below the size of the fraction.
+    fn size_rounded_up(&self) -> f64 {
+        let near = self.nearest().abs();
+        let size = Self {
+            top: self.top.clone().abs(),
+            bottom: self.bottom.clone(),
+        };
+        if near.is_finite() && size.minus(near).top > IBig::ZERO {
+            near.next_up()
+        } else {
+            near
+        }
+    }
 }
 
 /// Rounds by enclosures of rising precision until both ends agree.
@@ -269,14 +337,9 @@ fn nearest_by_enclosure(enclose: impl Fn(usize) -> DyadicInterval, scale: i32) -
     let mut bits = 80;
     loop {
         let around = enclose(bits);
-        let end = |x: &IBig| {
-            if around.exponent >= 0 {
-                nearest_ratio(&(x << around.exponent as usize), &UBig::ONE, scale)
-            } else {
-                nearest_ratio(x, &(UBig::ONE << (-around.exponent) as usize), scale)
-            }
-        };
-        let (low, high) = (end(&around.lower), end(&around.upper));
+        let exponent = around.exponent - i64::from(scale);
+        let low = Fraction::dyadic(&around.lower, exponent).nearest();
+        let high = Fraction::dyadic(&around.upper, exponent).nearest();
         // An irrational number is never a midpoint, so this ends; the bound is
         // for numbers that are rational in disguise.
         if low == high || bits > 4000 {
@@ -286,8 +349,8 @@ fn nearest_by_enclosure(enclose: impl Fn(usize) -> DyadicInterval, scale: i32) -
     }
 }
 
-/// Second word and bound for y in [low, high]·2^−scale, given the first word.
-fn expansion_of(hi: f64, low: &RBig, high: &RBig, scale: i32) -> Expansion {
+/// Second word and bound for y in [low, high], given the first word.
+fn expansion_of(hi: f64, low: &Fraction, high: &Fraction) -> Expansion {
     if !hi.is_finite() {
         return Expansion {
             hi,
@@ -295,17 +358,13 @@ fn expansion_of(hi: f64, low: &RBig, high: &RBig, scale: i32) -> Expansion {
             bound: f64::INFINITY,
         };
     }
-    let head = ratio_of_double(hi);
-    let rest_low = times_power_of_two(low.clone(), -scale) - &head;
-    let rest_high = times_power_of_two(high.clone(), -scale) - &head;
-    let lo = nearest_ratio(rest_low.numerator(), rest_low.denominator(), 0);
-    let tail = ratio_of_double(lo);
-    let left = (rest_low - &tail).abs().max((rest_high - tail).abs());
-    let near = nearest_ratio(left.numerator(), left.denominator(), 0);
-    let bound = if ratio_of_double(near) >= left {
-        near
-    } else {
-        near.next_up()
-    };
-    Expansion { hi, lo, bound }
+    let rest = low.minus(hi);
+    let lo = rest.nearest();
+    let below = rest.minus(lo).size_rounded_up();
+    let above = high.minus(hi).minus(lo).size_rounded_up();
+    Expansion {
+        hi,
+        lo,
+        bound: below.max(above),
+    }
 }

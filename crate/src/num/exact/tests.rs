@@ -315,6 +315,15 @@ fn expansions_of_chosen_numbers_hold() {
     assert_eq!(ExactReal::Binary(0.1).expansion(0).bound, 0.0);
     assert_eq!(decimal(15, 24).expansion(0).bound, 0.0);
     assert!(ratio(1, 3).expansion(0).bound > 0.0);
+    // Two words hold these exactly.
+    for x in [
+        decimal(90_071_992_547_409_935, -1),
+        decimal(i64::MAX, 0),
+        decimal(i64::MIN + 1, 2),
+    ] {
+        let e = x.expansion(0);
+        assert!(e.bound == 0.0 && e.lo != 0.0, "{x}: {e:?}");
+    }
 }
 
 #[test]
@@ -330,6 +339,8 @@ fn a_mean_is_exact() {
 fn any_number() -> impl Strategy<Value = ExactReal> {
     prop_oneof![
         (any::<i64>(), -340i16..300).prop_map(|(d, e)| decimal(d, e)),
+        (any::<i64>(), -28i16..29).prop_map(|(d, e)| decimal(d, e)),
+        (-(1i64 << 55)..1 << 55, -28i16..29).prop_map(|(d, e)| decimal(d, e)),
         (-100_000i64..100_000, -12i16..12).prop_map(|(d, e)| decimal(d, e)),
         (any::<i64>(), 1..u64::MAX).prop_map(|(p, q)| ratio(p, q)),
         any::<f64>()
