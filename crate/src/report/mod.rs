@@ -11,7 +11,6 @@ pub mod exact_view;
 pub mod export;
 pub mod map;
 pub mod proof_view;
-pub mod residual;
 pub mod run;
 pub mod sheet;
 pub mod solution;

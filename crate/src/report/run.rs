@@ -4,7 +4,6 @@
 use dashu_ratio::RBig;
 
 use super::decimal::{self, Rounding};
-use super::residual;
 use super::spectrum::Line;
 use crate::exact::ExactSpectrum;
 use crate::fingerprint::Taking;
@@ -13,6 +12,7 @@ use crate::num::figure;
 use crate::num::ExactReal;
 use crate::problem::{Problem, Rounded};
 use crate::prove::Proof;
+use crate::residuals::{residuals, Residuals};
 use crate::solve::{Solution, SolveError};
 
 /// What was typed around the numbers.
@@ -49,8 +49,8 @@ pub struct Run {
     pub outcome: Result<Solution, SolveError>,
     /// Fingerprint of problem and result; empty without a result.
     pub fingerprint: String,
-    /// Bounds on the residual norms, scaled; empty without a result.
-    pub residual_bounds: Vec<f64>,
+    /// Residuals of the rounded problem, scaled.
+    pub residuals: Option<Residuals>,
     /// What is proven so far.
     pub proof: Option<Proof>,
     /// What the exact road found.
@@ -70,10 +70,10 @@ impl Run {
         outcome: Result<Solution, SolveError>,
     ) -> Self {
         let fingerprint = fingerprint(&problem, &outcome);
-        let residual_bounds = match &outcome {
-            Ok(solution) => residual::residual_bounds(&rounded, &solution.approximation),
-            Err(_) => Vec::new(),
-        };
+        let residuals = outcome
+            .as_ref()
+            .ok()
+            .map(|solution| residuals(&rounded, &solution.approximation));
         Self {
             heading,
             problem,
@@ -81,7 +81,7 @@ impl Run {
             ledger,
             outcome,
             fingerprint,
-            residual_bounds,
+            residuals,
             proof: None,
             exact: None,
         }
@@ -172,9 +172,15 @@ impl Run {
             .collect()
     }
 
-    /// The residual bound of the eigenvalue at `index` (from 0) as text.
-    pub fn residual_bound(&self, index: usize) -> Option<String> {
-        let bound = decimal::exact(*self.residual_bounds.get(index)?, self.rounded.matrix_scale)?;
+    /// Bound on the residual norm of the eigenvalue at `index` (from 0), scaled.
+    pub fn residual_bound(&self, index: usize) -> Option<f64> {
+        let measured = self.residuals.as_ref()?.pairs.get(index)?;
+        Some((measured.approx_norm + measured.rounding).next_up())
+    }
+
+    /// The same as text, in the units of the problem.
+    pub fn residual_text(&self, index: usize) -> Option<String> {
+        let bound = decimal::exact(self.residual_bound(index)?, self.rounded.matrix_scale)?;
         Some(decimal::significant(&bound, 2, Rounding::Up))
     }
 

@@ -89,7 +89,7 @@ pub fn of_run(run: &Run, kind: ExportKind) -> Option<FileText> {
     let solution = run.outcome.as_ref().ok()?;
     let form = &solution.reduction.tridiagonal;
     let bounds: Vec<String> = (0..run.order())
-        .filter_map(|k| run.residual_bound(k))
+        .filter_map(|k| run.residual_text(k))
         .collect();
     let data = Data {
         title: run.heading.title.trim(),

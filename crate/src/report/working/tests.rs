@@ -136,3 +136,19 @@ fn drifts_are_whole_units() {
     assert_eq!(rows::ulps(2.5), "+3");
     assert_eq!(rows::ulps(-12.0), "−12");
 }
+
+#[test]
+fn residual_bounds_are_of_the_size_rounding_leaves() {
+    let run = run_of_order(8);
+    let norm = run.residuals.as_ref().expect("converges").matrix_norm;
+    for k in 0..8 {
+        let bound = run.residual_bound(k).expect("a bound");
+        // The solver leaves a small multiple of n·u·‖A‖, the bound on the
+        // measuring itself about as much.
+        assert!(0.0 < bound && bound < 100.0 * 8.0 * f64::EPSILON * norm, "{k}: {bound} of {norm}");
+    }
+    for fact in crate::report::values::checks(&run) {
+        let figure: f64 = fact.figure.replace('−', "-").parse().expect("a number");
+        assert!(figure < 10.0, "{fact:?}");
+    }
+}
