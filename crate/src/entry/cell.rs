@@ -26,7 +26,7 @@ use super::expression;
 use crate::num::ExactReal;
 
 /// Bytes a cell may have.
-pub const MAX_CELL_BYTES: usize = 10_000;
+pub const MAX_CELL_BYTES: usize = 50_000;
 
 /// Significant digits an inline decimal surely holds.
 const INLINE_DIGITS: usize = 18;
@@ -92,7 +92,8 @@ impl CellValue {
 }
 
 impl std::fmt::Display for CellValue {
-    /// Text that [`parse_cell`] reads back to the same value.
+    /// Text that [`parse_cell`] reads back to the same value, as long as it is
+    /// not longer than a cell may be.
     fn fmt(&self, f: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
         if self.im.is_zero() {
             write!(f, "{}", self.re)?;

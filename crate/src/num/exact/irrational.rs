@@ -290,31 +290,38 @@ impl Irrational {
     pub(super) fn write(&self, f: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
         match &self.form {
             Form::Terms(terms) => super::text::write_terms(terms, f),
-            Form::Sum(a, b) => write_pair(a, "+", b, f),
-            Form::Product(a, b) => write_pair(a, "*", b, f),
-            Form::Reciprocal(a) => {
-                f.write_str("1/(")?;
+            // Only the right operand needs parentheses: sums and products are
+            // read from the left, so a long chain does not nest.
+            Form::Sum(a, b) => {
                 a.write(f)?;
-                f.write_str(")")
+                b.write_enclosed("+(", f)
             }
-            Form::Root(a) => {
-                f.write_str("sqrt(")?;
+            Form::Product(a, b) if a.is_sum() => {
+                a.write_enclosed("(", f)?;
+                b.write_enclosed("*(", f)
+            }
+            Form::Product(a, b) => {
                 a.write(f)?;
-                f.write_str(")")
+                b.write_enclosed("*(", f)
             }
+            Form::Reciprocal(a) => a.write_enclosed("1/(", f),
+            Form::Root(a) => a.write_enclosed("sqrt(", f),
         }
     }
-}
 
-fn write_pair(
-    a: &Irrational,
-    sign: &str,
-    b: &Irrational,
-    f: &mut std::fmt::Formatter<'_>,
-) -> std::fmt::Result {
-    f.write_str("(")?;
-    a.write(f)?;
-    write!(f, "){sign}(")?;
-    b.write(f)?;
-    f.write_str(")")
+    /// Whether the text of the number is a sum.
+    fn is_sum(&self) -> bool {
+        match &self.form {
+            Form::Terms(terms) => terms.0.len() > 1,
+            Form::Sum(..) => true,
+            _ => false,
+        }
+    }
+
+    /// Writes the number between `opening` and a closing parenthesis.
+    fn write_enclosed(&self, opening: &str, f: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
+        f.write_str(opening)?;
+        self.write(f)?;
+        f.write_str(")")
+    }
 }

@@ -75,7 +75,8 @@ impl ExactReal {
             }
         }
         match self {
-            Self::Binary(x) if scale == 0 => *x,
+            // A negative zero of a file is the number zero.
+            Self::Binary(x) if scale == 0 => *x + 0.0,
             Self::Irrational(x) => nearest_by_enclosure(|bits| x.enclose(bits), scale),
             _ => Fraction::of(self).scaled(-i64::from(scale)).nearest(),
         }

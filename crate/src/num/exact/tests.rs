@@ -74,6 +74,27 @@ fn nested_roots_cancel_by_form() {
 }
 
 #[test]
+fn long_chains_do_not_nest_in_print() {
+    let mut sum = ExactReal::ZERO;
+    for n in 2..90 {
+        let term = ExactReal::ONE.add(&root(n)).unwrap().sqrt().unwrap();
+        sum = sum.add(&term).unwrap();
+    }
+    let text = sum.to_string();
+    let deepest = text.chars().fold((0i32, 0i32), |(depth, most), c| {
+        let depth = depth + i32::from(c == '(') - i32::from(c == ')');
+        (depth, most.max(depth))
+    });
+    assert!(deepest.1 < 6, "{text}");
+}
+
+#[test]
+fn a_negative_zero_is_zero() {
+    assert_eq!(ExactReal::Binary(-0.0).nearest(0).to_bits(), 0);
+    assert_eq!(ExactReal::Binary(-0.0).expansion(0).hi.to_bits(), 0);
+}
+
+#[test]
 fn a_denested_root_in_disguise_is_undecided_not_endless() {
     // sqrt(3 + 2 sqrt 2) = 1 + sqrt 2, which no rule here sees.
     let disguised = ExactReal::from(3).add(&root(8)).unwrap().sqrt().unwrap();
