@@ -101,3 +101,13 @@ fn matrix_market() {
 fn npy() {
     replay("npy", checks::npy);
 }
+
+#[test]
+fn document() {
+    replay("document", checks::document);
+}
+
+#[test]
+fn link() {
+    replay("link", checks::link);
+}

@@ -33,7 +33,7 @@ pub fn text(data: &[u8]) {
 
 /// One cell.
 pub fn cell(data: &[u8]) {
-    use eigenledger::entry::cell::{parse_cell, CellOptions, Parameters};
+    use eigenledger::entry::cell::{parse_cell, CellOptions, Parameters, MAX_CELL_BYTES};
     let Ok(text) = std::str::from_utf8(data) else {
         return;
     };
@@ -45,6 +45,9 @@ pub fn cell(data: &[u8]) {
     match parse_cell(text, &parameters, CellOptions::default()) {
         Ok(value) => {
             let printed = value.to_string();
+            if printed.len() > MAX_CELL_BYTES {
+                return;
+            }
             let again = parse_cell(&printed, &parameters, CellOptions::default())
                 .unwrap_or_else(|error| panic!("{text:?} printed as {printed:?}: {error}"));
             let same = again.re.equals(&value.re) != Some(false)
@@ -61,6 +64,53 @@ pub fn cell(data: &[u8]) {
             assert!(text.is_char_boundary(error.span.end), "{text:?}: {error:?}");
         }
     }
+}
+
+/// Problem documents: as they are, and as further fields of a small one.
+pub fn document(data: &[u8]) {
+    use eigenledger::document::{read, understand, write};
+    let Ok(text) = std::str::from_utf8(data) else {
+        return;
+    };
+    let small = r#"{"format":"eigenledger problem","version":1,"#;
+    for text in [text.to_owned(), [small, text, "}"].concat()] {
+        match read(&text) {
+            Ok(document) => {
+                assert_eq!(read(&write(&document)), Ok(document.clone()), "{text:?}");
+                let found = understand(&document);
+                assert!(
+                    found.assembly.is_err() || found.matrix.is_usable(),
+                    "{text:?}"
+                );
+            }
+            Err(error) => assert!(error.sentence.ends_with('.'), "{text:?}: {error:?}"),
+        }
+    }
+}
+
+/// Links: any text is answered, and a link that carries this text is refused
+/// after any change of one character.
+pub fn link(data: &[u8]) {
+    use eigenledger::document::ProblemDocument;
+    use eigenledger::link::{decode, encode};
+    let Ok(text) = std::str::from_utf8(data) else {
+        return;
+    };
+    if let Ok(document) = decode(text) {
+        assert_eq!(decode(&encode(&document)), Ok(document), "{text:?}");
+    }
+    let document = ProblemDocument {
+        matrix: text.to_owned(),
+        ..ProblemDocument::default()
+    };
+    let whole = encode(&document);
+    assert_eq!(decode(&whole), Ok(document), "{text:?}");
+    let at = data.iter().map(|byte| usize::from(*byte)).sum::<usize>() % whole.len();
+    let mut changed = whole.clone().into_bytes();
+    changed[at] = if changed[at] == b'A' { b'B' } else { b'A' };
+    let changed = String::from_utf8(changed).unwrap_or_default();
+    assert!(decode(&changed).is_err(), "{text:?}: {changed}");
+    assert!(decode(&whole[..at]).is_err(), "{text:?}: {}", &whole[..at]);
 }
 
 /// JSON arrays.
