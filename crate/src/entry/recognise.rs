@@ -1,7 +1,7 @@
 //! Which layouts a text may be in, by its content.
 
 use super::clean;
-use super::settings::{DecimalMark, Layout, Settings, SignedWords};
+use super::settings::{DecimalMark, Labels, Layout, Settings, SignedWords};
 use super::{brackets, html, json, latex, markdown, matrix_market, plain};
 
 /// The readings a text allows, most natural first; one unless the content is
@@ -14,6 +14,9 @@ pub(crate) fn candidates(source: &str, chosen: &Settings) -> Vec<Settings> {
     let plain = found
         .iter()
         .all(|settings| settings.layout.is_some_and(is_plain));
+    // A label may begin with a bracket, which alone does not make JSON.
+    let labelled = chosen.labels.is_some_and(|labels| labels != Labels::None);
+    let plain = plain || labelled && found == [of(Layout::Json)] && !json::is_json(source.trim());
     let found = match chosen.layout {
         Some(layout) if plain && is_plain(layout) => vec![of(layout)],
         _ => found,
