@@ -11,6 +11,7 @@
 
 mod back;
 mod convention;
+mod judge;
 mod rotations;
 mod twisted;
 

@@ -7,19 +7,21 @@
 //! small eigenvalues of graded matrices keep their digits; the second settles
 //! blocks whose eigenvalues are themselves rounding residue.
 
+mod error;
 mod sweep;
+mod tally;
 
 #[cfg(test)]
 mod tests;
 
+pub use error::IterateError;
 pub(crate) use sweep::{sweep, Rotation};
 pub use sweep::{Direction, SweepStep};
 
 use crate::control::{Control, Flow, Stage};
-use crate::ledger::{Basis, Event, Listening, Recorder, Totals};
-use crate::matrix::norms::{length, norm2};
+use crate::ledger::{Event, Listening, Recorder};
 use crate::reduce::Tridiagonal;
-use std::fmt;
+use tally::Tally;
 
 /// An off-diagonal entry set to zero.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -56,60 +58,6 @@ impl Default for Limits {
         Self { sweeps_per_row: 40 }
     }
 }
-
-/// Why the iteration did not finish. What was recorded up to then stays with
-/// the recorder.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum IterateError {
-    /// The cap on sweeps was reached.
-    NotConverged {
-        /// First row of the active block, from 0.
-        first: usize,
-        /// Last row of it.
-        last: usize,
-        /// Sweeps done.
-        sweeps: usize,
-    },
-    /// T has an entry that is not finite.
-    NotFinite {
-        /// Row, from 0.
-        row: usize,
-    },
-    /// Cancelled by the caller.
-    Cancelled {
-        /// Sweeps done.
-        sweeps: usize,
-    },
-}
-
-impl fmt::Display for IterateError {
-    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        match self {
-            Self::NotConverged {
-                first,
-                last,
-                sweeps,
-            } => write!(
-                f,
-                "The iteration did not settle rows {} to {} within {sweeps} sweeps. The ledger \
-                 holds what was done; solve the matrix in another order of its rows.",
-                first + 1,
-                last + 1
-            ),
-            Self::NotFinite { row } => write!(
-                f,
-                "Row {} of the tridiagonal form is not finite; scale the problem so that its \
-                 largest entry is near 1.",
-                row + 1
-            ),
-            Self::Cancelled { sweeps } => {
-                write!(f, "Cancelled during the iteration, after {sweeps} sweeps.")
-            }
-        }
-    }
-}
-
-impl std::error::Error for IterateError {}
 
 /// Eigenvalues of T, every sweep, shift and deflation recorded.
 ///
@@ -298,99 +246,4 @@ impl Work {
             );
         }
     }
-}
-
-/// Balance and control totals of the iteration. Sums are kept in stretches of
-/// [`STRETCH`] rows; an act on a block takes only its stretches anew, and every
-/// total is the sum over the stretches of the state itself.
-struct Tally {
-    listening: Listening,
-    stretches: Vec<Sums>,
-}
-
-#[derive(Clone, Copy, Default)]
-struct Sums {
-    trace: f64,
-    diagonal: f64,
-    off: f64,
-}
-
-const STRETCH: usize = 32;
-
-impl Tally {
-    fn new(tridiagonal: &Tridiagonal, listening: Listening) -> Self {
-        let count = match listening {
-            Listening::Yes => tridiagonal.order().div_ceil(STRETCH),
-            Listening::No => 0,
-        };
-        let mut tally = Self {
-            listening,
-            stretches: vec![Sums::default(); count],
-        };
-        if count > 0 {
-            tally.refresh(tridiagonal, 0, tridiagonal.order() - 1);
-        }
-        tally
-    }
-
-    fn refresh(&mut self, state: &Tridiagonal, first: usize, last: usize) {
-        for stretch in first / STRETCH..=last / STRETCH {
-            let start = stretch * STRETCH;
-            let end = state.order().min(start + STRETCH);
-            let diagonal = &state.diagonal[start..end];
-            let off = &state.off_diagonal[start..end.min(state.off_diagonal.len())];
-            self.stretches[stretch] = Sums {
-                trace: diagonal.iter().sum(),
-                diagonal: sum_of_squares(diagonal),
-                off: sum_of_squares(off),
-            };
-        }
-    }
-
-    fn after(&mut self, state: &Tridiagonal, first: usize, last: usize) -> Totals {
-        self.refresh(state, first, last);
-        let sums = self
-            .stretches
-            .iter()
-            .fold(Sums::default(), |sum, part| Sums {
-                trace: sum.trace + part.trace,
-                diagonal: sum.diagonal + part.diagonal,
-                off: sum.off + part.off,
-            });
-        // Squares of very small off-diagonals vanish: only then take the scaled norm.
-        let off = if sums.off > SMALLEST_PLAIN {
-            sums.off.sqrt()
-        } else {
-            norm2(state.off_diagonal.iter())
-        };
-        let balance = off * std::f64::consts::SQRT_2;
-        let diagonal = if sums.diagonal > SMALLEST_PLAIN {
-            sums.diagonal.sqrt()
-        } else {
-            norm2(state.diagonal.iter())
-        };
-        Totals {
-            trace: sums.trace,
-            frobenius: length(diagonal, balance),
-            balance,
-            basis: Basis::Measured,
-        }
-    }
-}
-
-/// Below this a sum of squares may have lost terms to underflow (2⁻⁹⁰⁰).
-const SMALLEST_PLAIN: f64 = crate::matrix::norms::power_of_two(-900);
-
-fn sum_of_squares(values: &[f64]) -> f64 {
-    let (fours, rest) = values.as_chunks::<4>();
-    let mut sums = [0.0; 4];
-    for four in fours {
-        for lane in 0..4 {
-            sums[lane] += four[lane] * four[lane];
-        }
-    }
-    rest.iter()
-        .fold((sums[0] + sums[1]) + (sums[2] + sums[3]), |sum, x| {
-            sum + x * x
-        })
 }

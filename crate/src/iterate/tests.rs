@@ -1,6 +1,6 @@
 use super::*;
 use crate::control::Unattended;
-use crate::ledger::{Act, Ledger, Silent};
+use crate::ledger::{Act, Ledger, Silent, Totals};
 
 fn kac(order: usize) -> Tridiagonal {
     Tridiagonal {

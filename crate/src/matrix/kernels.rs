@@ -15,7 +15,8 @@
 //! parts' moduli (Higham, "Accuracy and Stability of Numerical Algorithms",
 //! 2nd ed., §3). Nothing is scaled: products that overflow or underflow do so.
 
-use super::lanes::Lanes;
+use super::packing::{pack, Strips};
+use super::tile::{add_tile, tile_products, Place, TILE};
 use super::Dense;
 use nalgebra::DMatrix;
 
@@ -24,9 +25,6 @@ pub const DEPTH: usize = 256;
 
 /// Rows packed at a time: a block of DEPTH × ROWS doubles stays in the second-level cache.
 const ROWS: usize = 64;
-
-/// Side of the register tile.
-const TILE: usize = 4;
 
 /// How an operand enters the product.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -217,181 +215,6 @@ fn run(
                         add_tile(im, update, target.im, place);
                     }
                 }
-            }
-        }
-    }
-}
-
-/// Which way the strips of four lie in the stored operand.
-#[derive(Clone, Copy)]
-enum Strips {
-    /// Four rows, along the columns.
-    OfRows,
-    /// Four columns, along the rows.
-    OfColumns,
-}
-
-/// Packs strips of four, `across` them and `along` the inner index; a last
-/// strip that is not full is filled with zeros.
-fn pack(
-    packed: &mut Vec<f64>,
-    source: &[f64],
-    stride: usize,
-    strips: Strips,
-    across: std::ops::Range<usize>,
-    along: std::ops::Range<usize>,
-) {
-    let depth = along.len();
-    if source.is_empty() || depth == 0 {
-        packed.clear();
-        return;
-    }
-    let length = across.len().div_ceil(TILE) * TILE * depth;
-    if packed.capacity() < length {
-        // Every number is written below: what was there need not be copied.
-        *packed = vec![0.0; length];
-    }
-    packed.resize(length, 0.0);
-    for (strip, packed) in packed.chunks_exact_mut(TILE * depth).enumerate() {
-        let first = across.start + strip * TILE;
-        let present = TILE.min(across.end - first);
-        let fours = packed.as_chunks_mut::<TILE>().0;
-        if present < TILE {
-            fours.fill([0.0; TILE]);
-        }
-        match strips {
-            Strips::OfRows => {
-                for (four, k) in fours.iter_mut().zip(along.clone()) {
-                    let at = first + k * stride;
-                    if present == TILE {
-                        four.copy_from_slice(&source[at..at + TILE]);
-                    } else {
-                        four[..present].copy_from_slice(&source[at..at + present]);
-                    }
-                }
-            }
-            Strips::OfColumns if present == TILE => {
-                let column = |k: usize| &source[(first + k) * stride..][along.clone()];
-                let [a, b, c, d] = [column(0), column(1), column(2), column(3)];
-                for (k, four) in fours.iter_mut().enumerate() {
-                    *four = [a[k], b[k], c[k], d[k]];
-                }
-            }
-            Strips::OfColumns => {
-                for lane in 0..present {
-                    let column = &source[(first + lane) * stride..][along.clone()];
-                    for (four, value) in fours.iter_mut().zip(column) {
-                        four[lane] = *value;
-                    }
-                }
-            }
-        }
-    }
-}
-
-/// Columns of the 4 × 4 tile, rows in two register pairs.
-type Tile = [[Lanes; 2]; TILE];
-
-/// The real and, where there is one, the imaginary tile of one product.
-#[inline(always)]
-fn tile_products(
-    left: [&[f64]; 2],
-    orientation: Orientation,
-    right: [&[f64]; 2],
-) -> (Tile, Option<Tile>) {
-    let zero = [[Lanes::splat(0.0); 2]; TILE];
-    let re = add_products(zero, left[0], right[0]);
-    if left[1].is_empty() && right[1].is_empty() {
-        return (re, None);
-    }
-    // The conjugate changes the sign of the left imaginary part only.
-    match orientation {
-        Orientation::AsStored => {
-            let im = add_products(zero, left[0], right[1]);
-            (
-                subtract_products(re, left[1], right[1]),
-                Some(add_products(im, left[1], right[0])),
-            )
-        }
-        Orientation::Transposed => {
-            let im = add_products(zero, left[0], right[1]);
-            (
-                add_products(re, left[1], right[1]),
-                Some(subtract_products(im, left[1], right[0])),
-            )
-        }
-    }
-}
-
-#[inline(always)]
-fn add_products(tile: Tile, left: &[f64], right: &[f64]) -> Tile {
-    each_product(tile, left, right, |sum, product| sum + product)
-}
-
-#[inline(always)]
-fn subtract_products(tile: Tile, left: &[f64], right: &[f64]) -> Tile {
-    each_product(tile, left, right, |sum, product| sum - product)
-}
-
-/// The innermost loop: 16 multiplications and 16 sums a step, on two registers
-/// of the left strip and four broadcast values of the right one.
-#[inline(always)]
-fn each_product(
-    mut tile: Tile,
-    left: &[f64],
-    right: &[f64],
-    join: impl Fn(Lanes, Lanes) -> Lanes,
-) -> Tile {
-    let left = left.as_chunks::<2>().0.as_chunks::<2>().0;
-    for ([upper, lower], values) in left.iter().zip(right.as_chunks::<TILE>().0) {
-        let (upper, lower) = (Lanes::load(upper), Lanes::load(lower));
-        for (column, value) in tile.iter_mut().zip(values) {
-            let value = Lanes::splat(*value);
-            column[0] = join(column[0], upper * value);
-            column[1] = join(column[1], lower * value);
-        }
-    }
-    tile
-}
-
-/// Where a tile belongs in the target.
-#[derive(Clone, Copy)]
-struct Place {
-    row: usize,
-    rows: usize,
-    col: usize,
-    cols: usize,
-    stride: usize,
-}
-
-#[inline(always)]
-fn add_tile(tile: Tile, update: Update, target: &mut [f64], place: Place) {
-    let Place {
-        row,
-        rows,
-        col,
-        cols,
-        stride,
-    } = place;
-    let height = TILE.min(rows - row);
-    for (j, [upper, lower]) in tile.into_iter().enumerate().take(cols - col) {
-        let at = row + (col + j) * stride;
-        let destination = &mut target[at..at + height];
-        if let ([first, second], []) = destination.as_chunks_mut::<2>() {
-            let (above, below) = (Lanes::load(first), Lanes::load(second));
-            let (above, below) = match update {
-                Update::Add => (above + upper, below + lower),
-                Update::Subtract => (above - upper, below - lower),
-            };
-            above.store(first);
-            below.store(second);
-            continue;
-        }
-        let ([a, b], [c, d]) = (upper.to_array(), lower.to_array());
-        for (entry, value) in destination.iter_mut().zip([a, b, c, d]) {
-            match update {
-                Update::Add => *entry += value,
-                Update::Subtract => *entry -= value,
             }
         }
     }

@@ -5,6 +5,8 @@ pub mod exact;
 pub mod kernels;
 pub mod lanes;
 pub mod norms;
+mod packing;
+mod tile;
 
 pub use dense::Dense;
 pub use exact::ExactMatrix;

@@ -7,6 +7,9 @@
 //! Reflectors are taken from the first column on and act on rows and columns
 //! 2…n only, so Q e₁ = e₁.
 
+mod checkpoint;
+mod error;
+mod gauge;
 mod metric;
 mod pass;
 mod reflector;
@@ -15,17 +18,19 @@ mod run;
 #[cfg(test)]
 mod tests;
 
+pub(crate) use checkpoint::Checkpoint;
+pub use error::ReduceError;
 pub(crate) use metric::solve_adjoint;
 pub use metric::{cholesky, CholeskyError};
+pub(crate) use run::dot;
 pub use run::ReductionRun;
-pub(crate) use run::{dot, Checkpoint};
 
 use crate::control::{Control, Flow, Stage};
-use crate::ledger::{Basis, Event, Listening, Recorder, Totals};
-use crate::matrix::norms::{length, norm2, power_of_two};
+use crate::ledger::{Event, Listening, Recorder, Totals};
+use crate::matrix::norms::{length, power_of_two};
 use crate::matrix::Dense;
 use crate::problem::Rounded;
-use std::fmt;
+use gauge::Gauge;
 
 /// A real symmetric tridiagonal matrix.
 #[derive(Clone, Debug, Default, PartialEq)]
@@ -93,70 +98,6 @@ impl Reduction {
         self.factor.as_ref()
     }
 }
-
-/// Why there is no reduction.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub enum ReduceError {
-    /// An entry is infinite or not a number.
-    NotFinite {
-        /// Row, from 0.
-        row: usize,
-        /// Column, from 0.
-        col: usize,
-    },
-    /// The largest entry is far from 1: the problem was not scaled.
-    NotScaled {
-        /// The largest modulus among real and imaginary parts.
-        largest: f64,
-    },
-    /// Matrix and metric are not square of one order.
-    Shape {
-        /// Rows of the matrix.
-        rows: usize,
-        /// Columns of the matrix.
-        cols: usize,
-    },
-    /// The metric is not positive definite.
-    Metric(CholeskyError),
-    /// Cancelled by the caller.
-    Cancelled {
-        /// Columns in tridiagonal form by then.
-        column: usize,
-    },
-}
-
-impl fmt::Display for ReduceError {
-    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        match self {
-            Self::NotFinite { row, col } => write!(
-                f,
-                "The entry in row {}, column {} is not a finite number; give it a finite value.",
-                row + 1,
-                col + 1
-            ),
-            Self::NotScaled { largest } => write!(
-                f,
-                "The largest entry is {largest:e} after scaling; scale the problem by a power of \
-                 two so that it is near 1."
-            ),
-            Self::Shape { rows, cols } => write!(
-                f,
-                "The matrix has {rows} rows and {cols} columns; matrix and metric must be square \
-                 of one order."
-            ),
-            Self::Metric(error) => error.fmt(f),
-            Self::Cancelled { column } => {
-                write!(
-                    f,
-                    "Cancelled during the reduction, at column {}.",
-                    column + 1
-                )
-            }
-        }
-    }
-}
-
-impl std::error::Error for ReduceError {}
 
 /// Range of the largest entry within which the arithmetic of all stages
 /// neither overflows nor loses anything that matters.
@@ -339,84 +280,4 @@ fn make_real(
         },
         phases,
     )
-}
-
-/// Takes the balance and control totals of a reduction in progress.
-///
-/// Summing the trailing matrix entry by entry costs as much as half a step, so
-/// it is done for every [`MEASURED_EVERY`]th reflector and for the last
-/// [`MEASURED_TAIL`]; between, the Frobenius norm F last measured is carried and
-/// the balance is √(F² − band²), which is good to about F·√(n·u). Each reading
-/// says which it is.
-struct Gauge {
-    listening: Listening,
-    carried: f64,
-    readings: usize,
-}
-
-const MEASURED_EVERY: usize = 16;
-const MEASURED_TAIL: usize = 24;
-
-impl Gauge {
-    fn new(listening: Listening) -> Self {
-        Self {
-            listening,
-            carried: 0.0,
-            readings: 0,
-        }
-    }
-
-    fn read(&mut self, run: &ReductionRun) -> Totals {
-        if self.listening == Listening::No {
-            return Totals::default();
-        }
-        let (trace, band) = run.band();
-        let near_end = run.columns_done() + MEASURED_TAIL >= run.order();
-        let measured = near_end || self.readings.is_multiple_of(MEASURED_EVERY);
-        self.readings += 1;
-        if measured {
-            let balance = run.norm_outside_band();
-            self.carried = length(band, balance);
-            return Totals {
-                trace,
-                frobenius: self.carried,
-                balance,
-                basis: Basis::Measured,
-            };
-        }
-        // (F − b)(F + b) instead of F² − b²: no overflow, less cancellation.
-        let balance = ((self.carried - band).max(0.0) * (self.carried + band)).sqrt();
-        Totals {
-            trace,
-            frobenius: self.carried,
-            balance,
-            basis: Basis::ByDifference,
-        }
-    }
-}
-
-impl Totals {
-    /// Totals of a full Hermitian matrix, from its lower triangle.
-    pub(crate) fn of_matrix(matrix: &Dense) -> Self {
-        let run = ReductionRun::new(matrix);
-        let balance = run.norm_outside_band();
-        let (trace, band) = run.band();
-        Self {
-            trace,
-            frobenius: length(band, balance),
-            balance,
-            basis: Basis::Measured,
-        }
-    }
-
-    /// Totals of a tridiagonal matrix; the balance is the norm off the diagonal.
-    pub(crate) fn of_tridiagonal(tridiagonal: &Tridiagonal) -> Self {
-        let off = norm2(tridiagonal.off_diagonal.iter()) * std::f64::consts::SQRT_2;
-        Self {
-            trace: tridiagonal.diagonal.iter().sum(),
-            frobenius: length(norm2(tridiagonal.diagonal.iter()), off),
-            balance: off,
-            basis: Basis::Measured,
-        }
-    }
 }

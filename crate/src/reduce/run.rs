@@ -21,20 +21,20 @@ use nalgebra::DMatrix;
 /// one the next step works on.
 #[derive(Clone, Debug)]
 pub struct ReductionRun {
-    order: usize,
-    stride: usize,
-    re: Vec<f64>,
-    im: Vec<f64>,
-    done: usize,
-    pending: Option<(Split, Split)>,
-    spare: [Split; 2],
-    diagonal: Vec<f64>,
-    off_re: Vec<f64>,
-    off_im: Vec<f64>,
-    scalars: Vec<f64>,
+    pub(super) order: usize,
+    pub(super) stride: usize,
+    pub(super) re: Vec<f64>,
+    pub(super) im: Vec<f64>,
+    pub(super) done: usize,
+    pub(super) pending: Option<(Split, Split)>,
+    pub(super) spare: [Split; 2],
+    pub(super) diagonal: Vec<f64>,
+    pub(super) off_re: Vec<f64>,
+    pub(super) off_im: Vec<f64>,
+    pub(super) scalars: Vec<f64>,
     /// Trace and squares of the band over the columns done.
-    settled_trace: f64,
-    settled_squares: f64,
+    pub(super) settled_trace: f64,
+    pub(super) settled_squares: f64,
 }
 
 /// The parts of a finished reduction.
@@ -79,7 +79,7 @@ impl ReductionRun {
     }
 
     /// Takes column `col`, just done, into the sums over the settled band.
-    fn settle(&mut self, col: usize) {
+    pub(super) fn settle(&mut self, col: usize) {
         let diagonal = self.diagonal[col];
         self.settled_trace += diagonal;
         self.settled_squares += diagonal * diagonal;
@@ -88,7 +88,7 @@ impl ReductionRun {
         }
     }
 
-    fn is_complex(&self) -> bool {
+    pub(super) fn is_complex(&self) -> bool {
         !self.im.is_empty()
     }
 
@@ -355,28 +355,6 @@ impl ReductionRun {
         norm * std::f64::consts::SQRT_2
     }
 
-    /// What is needed to go on from here: the trailing triangle, packed.
-    pub(crate) fn checkpoint(&self) -> Checkpoint {
-        let packed = |plane: &[f64]| -> Vec<f64> {
-            let columns = plane.chunks_exact(self.stride.max(1)).enumerate();
-            columns
-                .take(self.order)
-                .skip(self.done)
-                .flat_map(|(col, column)| &column[col..self.order])
-                .copied()
-                .collect()
-        };
-        Checkpoint {
-            order: self.order,
-            re: packed(&self.re),
-            im: packed(&self.im),
-            pending: self.pending.clone(),
-            diagonal: self.diagonal.clone(),
-            off_re: self.off_re.clone(),
-            off_im: self.off_im.clone(),
-        }
-    }
-
     pub(crate) fn finish(self) -> Finished {
         Finished {
             stride: self.stride,
@@ -387,66 +365,6 @@ impl ReductionRun {
             off_im: self.off_im,
             scalars: self.scalars,
         }
-    }
-}
-
-/// A state of a reduction, without the reflectors before it; see
-/// [`ReductionRun::checkpoint`]. About n²/2 doubles at the start (n² complex).
-#[derive(Clone, Debug)]
-pub(crate) struct Checkpoint {
-    order: usize,
-    re: Vec<f64>,
-    im: Vec<f64>,
-    pending: Option<(Split, Split)>,
-    diagonal: Vec<f64>,
-    off_re: Vec<f64>,
-    off_im: Vec<f64>,
-}
-
-impl Checkpoint {
-    /// A run that goes on from here.
-    pub fn resume(&self) -> ReductionRun {
-        let (order, done) = (self.order, self.diagonal.len());
-        let stride = order + order % 2;
-        let complex = !self.im.is_empty();
-        let unpacked = |packed: &[f64]| {
-            let mut plane = vec![0.0; stride * stride];
-            let mut rest = packed;
-            for col in done..order {
-                let (column, later) = rest.split_at(order - col);
-                plane[col * stride + col..col * stride + order].copy_from_slice(column);
-                rest = later;
-            }
-            plane
-        };
-        let mut run = ReductionRun {
-            order,
-            stride,
-            re: unpacked(&self.re),
-            im: if complex {
-                unpacked(&self.im)
-            } else {
-                Vec::new()
-            },
-            done,
-            pending: self.pending.clone(),
-            spare: [Split::zeros(stride, complex), Split::zeros(stride, complex)],
-            diagonal: self.diagonal.clone(),
-            off_re: self.off_re.clone(),
-            off_im: self.off_im.clone(),
-            scalars: vec![0.0; done],
-            settled_trace: 0.0,
-            settled_squares: 0.0,
-        };
-        for col in 0..done {
-            run.settle(col);
-        }
-        run
-    }
-
-    /// Bytes held.
-    pub fn approx_bytes(&self) -> usize {
-        8 * (self.re.len() + self.im.len() + 7 * self.order)
     }
 }
 

@@ -114,8 +114,8 @@ export function Proof() {
       <Further />
       {view !== null && (
         <>
-          {view.conditions.map((condition) => (
-            <Condition key={condition.symbol} condition={condition} />
+          {view.conditions.map((condition, place) => (
+            <Condition key={place} condition={condition} />
           ))}
           <Rests view={view} />
           <Certificate />
