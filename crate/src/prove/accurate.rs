@@ -10,6 +10,8 @@ use crate::num::eft::{two_product, two_sum};
 use crate::num::upper::{gamma, square_sum_up};
 use crate::num::Upper;
 
+use super::products::zeros_like;
+
 /// A product as high + low, and a bound on the 2-norm of each column's error.
 pub(super) struct Accurate {
     pub high: Dense,
@@ -26,15 +28,6 @@ pub(super) fn zip_planes(a: &mut Dense, b: &mut Dense, operation: impl Fn(&mut f
         for (x, y) in a.iter_mut().zip(b.iter_mut()) {
             operation(x, y);
         }
-    }
-}
-
-/// Zeros of the same shape and planes.
-pub(super) fn zeros_like(matrix: &Dense) -> Dense {
-    let zeros = |plane: &DMatrix<f64>| DMatrix::zeros(plane.nrows(), plane.ncols());
-    Dense {
-        re: zeros(&matrix.re),
-        im: matrix.im.as_ref().map(zeros),
     }
 }
 

@@ -22,6 +22,7 @@ use std::ops::RangeInclusive;
 
 use nalgebra::DMatrix;
 
+use crate::control::Unattended;
 use crate::matrix::kernels::product;
 use crate::matrix::Dense;
 use crate::num::upper::UNIT;
@@ -32,6 +33,7 @@ use super::enclosure::Theorem;
 use super::frame::{times_power, Frame};
 use super::jacobi;
 use super::norms::{modulus_up, Norms, Rounding};
+use super::products::Watch;
 use super::residual;
 use super::spectrum::Spectrum;
 use super::tight::{Certificate, QUOTIENT_BITS};
@@ -299,7 +301,11 @@ fn enclosed(matrix: &Dense, order: usize) -> Option<(Vec<Dyadic>, Upper)> {
     let budget = 6_000 + order * order * order / (8 * size);
     let (values, vectors) = jacobi::eigen(&unit, budget);
     let mut frame = Frame::of_doubles(unit, vectors, values);
-    let (_, residual) = residual::measure(&mut frame);
+    let mut watch = Watch {
+        control: &mut Unattended,
+        done: 0.0,
+    };
+    let (_, residual) = residual::measure(&mut frame, &mut watch).ok()?;
     let values = frame
         .values
         .iter()

@@ -126,29 +126,37 @@ impl Frame {
         }
     }
 
-    /// What rounding `typed` to the frame's doubles left: its low parts, and a
+    /// What rounding `typed` to the frame's doubles `high` left: its low parts, and a
     /// bound on the Frobenius norm of what those miss.
-    pub fn low_parts<'a>(&self, typed: &'a ExactMatrix, scale: i32) -> (Dense, Upper) {
+    pub fn low_parts<'a>(
+        &self,
+        typed: &'a ExactMatrix,
+        high: &Dense,
+        scale: i32,
+    ) -> (Dense, Upper) {
         let order = self.order;
         let mut bounds = Vec::new();
-        let mut plane = |part: &dyn Fn(usize, usize) -> &'a ExactReal| {
+        let mut plane = |part: &dyn Fn(usize, usize) -> &'a ExactReal, rounded: &DMatrix<f64>| {
             let mut plane = DMatrix::zeros(order, order);
             for i in 0..order {
                 for j in 0..order {
                     let parts = part(i, j).expansion(scale - self.weights[i] - self.weights[j]);
                     plane[(i, j)] = parts.lo;
-                    if parts.bound != 0.0 {
-                        bounds.push(parts.bound);
+                    // The frame's double is the high part, unless a nested surd
+                    // lies next to the middle of two doubles.
+                    let off = (parts.hi - rounded[(i, j)]).abs() + parts.bound;
+                    if off != 0.0 {
+                        bounds.push(off.next_up());
                     }
                 }
             }
             plane
         };
-        let re = plane(&|i, j| typed.re(i, j));
-        let im = self
-            .matrix
-            .is_complex()
-            .then(|| plane(&|i, j| typed.im(i, j)));
+        let re = plane(&|i, j| typed.re(i, j), &high.re);
+        let im = high
+            .im
+            .as_ref()
+            .map(|high| plane(&|i, j| typed.im(i, j), high));
         (Dense { re, im }, square_sum_up(bounds.into_iter()).sqrt())
     }
 

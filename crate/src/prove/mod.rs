@@ -5,7 +5,19 @@
 //! numbers, matrices, the problem, the plain approximation and the control,
 //! and nothing of the reduction or the iteration.
 //!
-//! The theorems are stated where they are used: [`Theorem`] lists them.
+//! On what each statement rests (proofs, where short, stand in the file named):
+//!
+//! | statement | theorem | file |
+//! |---|---|---|
+//! | M positive definite, X nonsingular | ‖XᴴMX − I‖ < 1 and Sylvester's law of inertia | `residual` |
+//! | every eigenvalue, with its multiplicity | Weyl 1912; Cao, Xie and Li 1996 on Kahan's conjecture | `residual` |
+//! | an isolated eigenvalue | Krylov; Weinstein 1934 | `spectrum` |
+//! | about 28 digits of it | Temple 1928; Kato 1949 | `tight` |
+//! | the eigenvalues of a cluster | Haynsworth 1968; Mathias 1998 | `block` |
+//! | directions of vectors and spaces | Davis and Kahan 1970 | `spectrum` |
+//! | rounding in double precision | Higham 2002; Ogita, Rump and Oishi 2005; Ozaki and others 2012 | `norms`, `slices`, `accurate` |
+//! | digits on demand | refinement after Ogita and Aishima 2018, then the first three again | `deep` |
+//! | ranges over tolerances | Weyl; Temple; Collatz 1942 | `ranges` |
 //!
 //! What is *not* proved: the processor's and compiler's conformance to IEEE 754
 //! binary64 with round to nearest; the model behind the matrix.
@@ -19,6 +31,7 @@ mod enclosure;
 mod frame;
 mod jacobi;
 mod norms;
+mod products;
 mod proof;
 mod ranges;
 mod residual;
@@ -34,7 +47,7 @@ pub use enclosure::{Cluster, Enclosure, Theorem};
 pub use proof::{Condition, ConditionKind, Count, Level, Proof, Verdict};
 pub use ranges::{tolerance_ranges, Range};
 
-use crate::control::{Control, Flow, Stage};
+use crate::control::Control;
 use crate::num::figure;
 use crate::num::{Dyadic, Upper};
 use crate::pairs::Approximation;
@@ -42,7 +55,8 @@ use crate::problem::Problem;
 
 use deep::{Outcome, Start};
 use frame::{Frame, FrameError};
-use residual::Residual;
+use products::{Cancelled, Watch};
+use residual::{Gram, Residual};
 use spectrum::Spectrum;
 
 /// Proves what it can of `problem` with the help of `approximation`.
@@ -100,72 +114,122 @@ fn unusable(reason: FrameError) -> Condition {
 /// Significant bits given to typed eigenvalues that are no binary fractions.
 const TYPED_BITS: u32 = 120;
 
+/// Share of the work done before the tight certificate, and before the deep one.
+const AFTER_QUICK: f64 = 0.05;
+const AFTER_TIGHT: f64 = 0.2;
+
 /// Runs the certificates in turn, each only if the level asks for it.
 fn climb(
     problem: &Problem,
-    mut frame: Frame,
-    mut conditions: Vec<Condition>,
+    frame: Frame,
+    conditions: Vec<Condition>,
     level: Level,
     control: &mut dyn Control,
 ) -> Proof {
     let order = frame.order;
-    let (mut gram, mut residual) = residual::measure(&mut frame);
-    let mut start = Start::FromVectors;
-    if residual.spectrum(&frame).is_none() {
-        start = Start::FromNothing;
-        conditions.push(nonsingular(
-            &residual,
-            "the proof starts from the matrix alone",
-        ));
-        if let Ok(mut bare) = Frame::without_vectors(problem) {
-            (gram, residual) = residual::measure(&mut bare);
-            frame = bare;
+    let mut proof = Proof::nothing(order, conditions);
+    let climbed = Climb {
+        problem,
+        level,
+        control,
+    }
+    .run(frame, &mut proof);
+    if climbed.is_err() {
+        proof.push(cancelled());
+    }
+    if proof.level().is_some() {
+        let condition = separation(&proof);
+        proof.push(condition);
+    }
+    proof
+}
+
+struct Climb<'a> {
+    problem: &'a Problem,
+    level: Level,
+    control: &'a mut dyn Control,
+}
+
+impl Climb<'_> {
+    /// Fills the proof as far as it comes.
+    fn run(&mut self, frame: Frame, proof: &mut Proof) -> Result<(), Cancelled> {
+        let (frame, gram, start) = self.quick(frame, proof)?;
+        if self.level == Level::Quick {
+            return Ok(());
+        }
+        self.watch(AFTER_QUICK).check()?;
+        if proof.level().is_some() {
+            let mut watch = Watch {
+                control: &mut *self.control,
+                done: AFTER_QUICK,
+            };
+            if let Some(mut spectrum) = tight::tight(self.problem, &frame, &gram, &mut watch)? {
+                diagonal::tighten(self.problem, &mut spectrum, frame.scale(), TYPED_BITS);
+                proof.replace(Level::Tight, spectrum.finish(frame.scale()));
+            }
+        }
+        let digits = match self.level {
+            Level::Deep { digits } => digits,
+            // Where double precision proves nothing, a small problem is still worth it.
+            Level::Tight if start == Start::FromNothing && frame.order <= RESCUED_ORDER => {
+                RESCUE_DIGITS
+            }
+            Level::Quick | Level::Tight => return Ok(()),
+        };
+        if !reaches(proof, digits) {
+            self.watch(AFTER_TIGHT).check()?;
+            deepen(self.problem, &frame, start, digits, proof, self.control);
+        }
+        if matches!(self.level, Level::Deep { .. }) {
+            let condition = digits_reached(proof, digits);
+            proof.push(condition);
+        }
+        Ok(())
+    }
+
+    fn watch(&mut self, done: f64) -> Watch<'_> {
+        Watch {
+            control: &mut *self.control,
+            done,
         }
     }
-    let mut proof = match residual.spectrum(&frame) {
-        None => {
-            conditions.push(nonsingular(
+
+    /// The quick certificate, from the matrix alone if X is of no use.
+    fn quick(
+        &mut self,
+        mut frame: Frame,
+        proof: &mut Proof,
+    ) -> Result<(Frame, Gram, Start), Cancelled> {
+        let (mut gram, mut residual) = residual::measure(&mut frame, &mut self.watch(0.0))?;
+        let mut start = Start::FromVectors;
+        if residual.spectrum(&frame).is_none() {
+            start = Start::FromNothing;
+            proof.push(nonsingular(
+                &residual,
+                "the proof starts from the matrix alone",
+            ));
+            if let Ok(mut bare) = Frame::without_vectors(self.problem) {
+                (gram, residual) = residual::measure(&mut bare, &mut self.watch(0.0))?;
+                frame = bare;
+            }
+        }
+        match residual.spectrum(&frame) {
+            None => proof.push(nonsingular(
                 &residual,
                 "nothing is proven in double precision",
-            ));
-            Proof::nothing(order, conditions)
+            )),
+            Some(mut spectrum) => {
+                spectrum.ascend();
+                diagonal::tighten(self.problem, &mut spectrum, frame.scale(), TYPED_BITS);
+                proof.push(nonsingular(&residual, ""));
+                for condition in radii(&residual, &frame) {
+                    proof.push(condition);
+                }
+                proof.replace(Level::Quick, spectrum.finish(frame.scale()));
+            }
         }
-        Some(mut spectrum) => {
-            spectrum.ascend();
-            diagonal::tighten(problem, &mut spectrum, frame.scale(), TYPED_BITS);
-            conditions.push(nonsingular(&residual, ""));
-            conditions.extend(radii(&residual, &frame));
-            Proof::new(Level::Quick, spectrum.finish(frame.scale()), conditions)
-        }
-    };
-    let wants_more = level != Level::Quick;
-    if wants_more && control.progress(Stage::Prove, 0.05) == Flow::Cancel {
-        proof.push(cancelled());
-        return closed(proof);
+        Ok((frame, gram, start))
     }
-    if wants_more && proof.level().is_some() {
-        if let Some(mut spectrum) = tight::tight(problem, &frame, &gram) {
-            diagonal::tighten(problem, &mut spectrum, frame.scale(), TYPED_BITS);
-            proof.replace(Level::Tight, spectrum.finish(frame.scale()));
-        }
-    }
-    let digits = match level {
-        Level::Deep { digits } => Some(digits),
-        // Where double precision proves nothing, a small problem is still worth it.
-        Level::Tight if start == Start::FromNothing && order <= RESCUED_ORDER => {
-            Some(RESCUE_DIGITS)
-        }
-        Level::Quick | Level::Tight => None,
-    };
-    if let Some(digits) = digits {
-        if !reaches(&proof, digits) {
-            deepen(problem, &frame, start, digits, &mut proof, control);
-        }
-        if matches!(level, Level::Deep { .. }) {
-            proof.push(digits_reached(&proof, digits));
-        }
-    }
-    closed(proof)
 }
 
 /// Largest order for which the tight level goes deep when X is of no use.
@@ -173,14 +237,6 @@ const RESCUED_ORDER: usize = 40;
 
 /// Digits asked for then.
 const RESCUE_DIGITS: u32 = 20;
-
-fn closed(mut proof: Proof) -> Proof {
-    if proof.level().is_some() {
-        let condition = separation(&proof);
-        proof.push(condition);
-    }
-    proof
-}
 
 fn reaches(proof: &Proof, digits: u32) -> bool {
     proof

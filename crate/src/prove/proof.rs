@@ -146,20 +146,6 @@ pub struct Proof {
 }
 
 impl Proof {
-    pub(super) fn new(
-        level: Level,
-        (enclosures, clusters): (Vec<Enclosure>, Vec<Cluster>),
-        conditions: Vec<Condition>,
-    ) -> Self {
-        Self {
-            level: Some(level),
-            order: enclosures.len(),
-            enclosures,
-            clusters,
-            conditions,
-        }
-    }
-
     /// Nothing is proven; the conditions say why.
     pub(super) fn nothing(order: usize, conditions: Vec<Condition>) -> Self {
         Self {

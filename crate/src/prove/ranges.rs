@@ -17,6 +17,7 @@
 
 use nalgebra::DMatrix;
 
+use crate::control::Control;
 use crate::matrix::kernels::product;
 use crate::matrix::Dense;
 use crate::num::figure;
@@ -26,6 +27,7 @@ use crate::problem::{Problem, Tolerances};
 
 use super::frame::{magnitude, Frame};
 use super::norms::{column_norms, modulus_up, Norms, Rounding};
+use super::products::Watch;
 use super::residual;
 
 /// The proven range of one eigenvalue over all problems within the tolerances:
@@ -60,7 +62,7 @@ impl Range {
 }
 
 /// Ranges of all eigenvalues, ascending; `None` when nothing is proven: X too
-/// far from M-orthonormal, or tolerances of the metric that might make it
+/// far from M-orthonormal, a cancel, or tolerances of the metric that might make it
 /// singular.
 ///
 /// Not claimed: that the ends are attained. Cost: 2 n³ besides the quick proof
@@ -70,9 +72,11 @@ pub fn tolerance_ranges(
     approximation: &Approximation,
     tolerances: Option<&Tolerances>,
     metric_tolerances: Option<&Tolerances>,
+    control: &mut dyn Control,
 ) -> Option<Vec<Range>> {
     let mut frame = Frame::new(problem, approximation).ok()?;
-    let (gram, residual) = residual::measure(&mut frame);
+    let mut watch = Watch { control, done: 0.0 };
+    let (gram, residual) = residual::measure(&mut frame, &mut watch).ok()?;
     let spread = Spread::of(&frame, tolerances, metric_tolerances)?;
     let defect = gram.defect.plus(spread.defect);
     let floor = defect.one_minus();

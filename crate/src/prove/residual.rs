@@ -19,9 +19,6 @@
 //! Weinstein). ‖L⁻¹r‖² = r*M⁻¹r with M⁻¹ = X(XᴴMX)⁻¹Xᴴ, so that
 //! ‖L⁻¹r‖ ≤ ‖X‖₂‖r‖₂/√(1 − φ); for M = I it is ‖r‖₂ itself.
 
-use crate::matrix::kernels::{
-    accumulate, product, Orientation, Packing, Plane, Shape, Target, Update,
-};
 use crate::matrix::Dense;
 use crate::num::upper::{square_sum_up, UNIT};
 use crate::num::Upper;
@@ -29,6 +26,7 @@ use nalgebra::DMatrix;
 
 use super::frame::Frame;
 use super::norms::{Norms, Rounding};
+use super::products::{hermitian_gram, watched_product, Cancelled, Watch};
 
 /// What the linear statements need.
 #[derive(Clone, Debug)]
@@ -46,17 +44,20 @@ pub(super) struct Residual {
 /// Measures X and Λ of a frame. Columns far from unit norm are rescaled once.
 ///
 /// Cost: n³ + n³/2 multiplications and additions for M = I, n³ more for a pair.
-pub(super) fn measure(frame: &mut Frame) -> (Gram, Residual) {
-    let first = Gram::of(frame);
+pub(super) fn measure(
+    frame: &mut Frame,
+    watch: &mut Watch<'_>,
+) -> Result<(Gram, Residual), Cancelled> {
+    let first = Gram::of(frame, watch)?;
     let gram = match first.unit_factors() {
         None => first,
         Some(factors) => {
             frame.rescale(&factors);
-            Gram::of(frame)
+            Gram::of(frame, watch)?
         }
     };
-    let residual = gram.residual(frame);
-    (gram, residual)
+    let residual = gram.residual(frame, watch)?;
+    Ok((gram, residual))
 }
 
 /// The products with the metric.
@@ -77,21 +78,22 @@ pub(super) struct Gram {
 }
 
 impl Gram {
-    fn of(frame: &Frame) -> Self {
+    fn of(frame: &Frame, watch: &mut Watch<'_>) -> Result<Self, Cancelled> {
         let order = frame.order;
         let vectors = Norms::of(&frame.vectors);
         let rounding = Rounding::new(order, order, frame.vectors.is_complex());
         let (weighted, weighted_loss, weighted_norms) = match &frame.metric {
             None => (None, Vec::new(), None),
             Some(metric) => {
-                let weighted = product(metric, &frame.vectors);
+                let weighted = watched_product(metric, &frame.vectors, watch)?;
                 let size = Norms::of(metric).spectral;
                 let loss = column_loss(rounding, size, &vectors);
                 let norms = Norms::of(&weighted);
                 (Some(weighted), loss, Some(norms))
             }
         };
-        let mut gram = upper_gram(&frame.vectors, weighted.as_ref().unwrap_or(&frame.vectors));
+        let right = weighted.as_ref().unwrap_or(&frame.vectors);
+        let mut gram = hermitian_gram(&frame.vectors, right, watch)?;
         let mut subtraction = 0.0f64;
         for k in 0..order {
             let entry = gram.re[(k, k)] - 1.0;
@@ -112,14 +114,14 @@ impl Gram {
             .plus(rounding.underflow.times(Upper::of(order as f64)))
             .plus(Upper::of(subtraction).times(Upper::of(UNIT)));
         let defect = Norms::of(&gram).spectral.plus(defects_error);
-        Self {
+        Ok(Self {
             weighted,
             defects: gram,
             defects_error,
             defect,
             vectors,
             weighted_loss,
-        }
+        })
     }
 
     /// Factors that bring columns of norm far from one to norm one.
@@ -137,12 +139,12 @@ impl Gram {
         })
     }
 
-    fn residual(&self, frame: &Frame) -> Residual {
+    fn residual(&self, frame: &Frame, watch: &mut Watch<'_>) -> Result<Residual, Cancelled> {
         let order = frame.order;
         let rounding = Rounding::new(order, order, frame.vectors.is_complex());
         let size = Norms::of(&frame.matrix).spectral;
         let matrix_loss = column_loss(rounding, size, &self.vectors);
-        let mut residual = product(&frame.matrix, &frame.vectors);
+        let mut residual = watched_product(&frame.matrix, &frame.vectors, watch)?;
         let right = self.weighted.as_ref().unwrap_or(&frame.vectors);
         let unit = Upper::of(UNIT);
         let mut columns = Vec::with_capacity(order);
@@ -185,12 +187,12 @@ impl Gram {
                 .collect();
             input = input.plus(Norms::of(metric).spectral.times(root_sum_square(&moved)));
         }
-        Residual {
+        Ok(Residual {
             defect: self.defect,
             radius: finish(total),
             columns: columns.into_iter().map(finish).collect(),
             input_loss: finish(unit.times(input)),
-        }
+        })
     }
 }
 
@@ -237,68 +239,4 @@ fn subtract_multiple(target: &mut Dense, source: &Dense, k: usize, value: f64) -
     }
     let slack = Upper::of(1.0 + 2.0 * f64::EPSILON);
     column_norm(source, k).times(Upper::of(value)).times(slack)
-}
-
-/// XᴴW for W = MX, an exactly Hermitian matrix: the upper triangle is computed
-/// in blocks of columns and mirrored.
-fn upper_gram(vectors: &Dense, weighted: &Dense) -> Dense {
-    use Update::{Add, Subtract};
-    let mut packing = Packing::default();
-    let mut plane = |terms: &[(&DMatrix<f64>, &DMatrix<f64>, Update)]| {
-        let order = vectors.cols();
-        let mut result = DMatrix::zeros(order, order);
-        for start in (0..order).step_by(BLOCK) {
-            let end = order.min(start + BLOCK);
-            let shape = Shape {
-                rows: end,
-                cols: end - start,
-                inner: vectors.rows(),
-            };
-            for (left, right, update) in terms {
-                let stride = vectors.rows();
-                let left = Plane {
-                    data: left.as_slice(),
-                    stride,
-                    orientation: Orientation::Transposed,
-                };
-                let right = Plane {
-                    data: &right.as_slice()[start * stride..],
-                    stride,
-                    orientation: Orientation::AsStored,
-                };
-                let mut target = Target {
-                    data: &mut result.as_mut_slice()[start * order..],
-                    stride: order,
-                };
-                accumulate(shape, *update, left, right, &mut target, &mut packing);
-            }
-        }
-        result
-    };
-    // A frame is complex in all its parts or in none.
-    let (mut re, mut im) = match (&vectors.im, &weighted.im) {
-        (Some(x), Some(w)) => (
-            plane(&[(&vectors.re, &weighted.re, Add), (x, w, Add)]),
-            Some(plane(&[(&vectors.re, w, Add), (x, &weighted.re, Subtract)])),
-        ),
-        _ => (plane(&[(&vectors.re, &weighted.re, Add)]), None),
-    };
-    mirror(&mut re, 1.0);
-    if let Some(im) = &mut im {
-        mirror(im, -1.0);
-        im.fill_diagonal(0.0);
-    }
-    Dense { re, im }
-}
-
-/// Columns a block of the half product is wide.
-const BLOCK: usize = 32;
-
-/// Copies the upper triangle, times `sign`, to the lower one.
-fn mirror(plane: &mut DMatrix<f64>, sign: f64) {
-    for j in 0..plane.ncols() {
-        for i in j + 1..plane.nrows() {
-            plane[(i, j)] = sign * plane[(j, i)];
-        }
-    }
 }

@@ -15,14 +15,14 @@
 
 use nalgebra::DMatrix;
 
-use crate::matrix::kernels::{accumulate, Orientation, Packing, Plane, Shape, Target, Update};
 use crate::matrix::Dense;
 use crate::num::eft::two_sum;
 use crate::num::upper::{gamma, UNIT};
 use crate::num::Upper;
 
-use super::accurate::{absorb, zeros_like, zip_planes, Accurate};
+use super::accurate::{absorb, zip_planes, Accurate};
 use super::norms::{column_norms, Rounding};
+use super::products::{add_product, zeros_like, Cancelled, Watch};
 
 /// Along which lines a grid is fixed.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -194,47 +194,16 @@ fn is_zero(matrix: &Dense) -> bool {
             .is_none_or(|im| im.iter().all(|x| *x == 0.0))
 }
 
-/// target ← target + left · right.
-fn add_product(target: &mut Dense, left: &Dense, right: &Dense, packing: &mut Packing) {
-    let shape = Shape {
-        rows: left.rows(),
-        cols: right.cols(),
-        inner: left.cols(),
-    };
-    let mut add =
-        |target: &mut DMatrix<f64>, left: &DMatrix<f64>, right: &DMatrix<f64>, update: Update| {
-            let left = Plane {
-                data: left.as_slice(),
-                stride: left.nrows(),
-                orientation: Orientation::AsStored,
-            };
-            let right = Plane {
-                data: right.as_slice(),
-                stride: right.nrows(),
-                orientation: Orientation::AsStored,
-            };
-            let stride = target.nrows();
-            let mut target = Target {
-                data: target.as_mut_slice(),
-                stride,
-            };
-            accumulate(shape, update, left, right, &mut target, packing);
-        };
-    add(&mut target.re, &left.re, &right.re, Update::Add);
-    if let (Some(im), Some(left_im), Some(right_im)) = (&mut target.im, &left.im, &right.im) {
-        add(&mut target.re, left_im, right_im, Update::Subtract);
-        add(im, &left.re, right_im, Update::Add);
-        add(im, left_im, &right.re, Update::Add);
-    }
-}
-
 /// The product of typed left and right factors, both complex or both real.
 ///
 /// Cost: six exact products and four plain ones, less those of zero slices.
-pub(super) fn accurate_product(left: &Left, right: &Right<'_>) -> Accurate {
+pub(super) fn accurate_product(
+    left: &Left,
+    right: &Right<'_>,
+    watch: &mut Watch<'_>,
+) -> Result<Accurate, Cancelled> {
     let order = right.whole.rows();
     let cols = right.whole.cols();
-    let mut packing = Packing::default();
     let mut high = zeros_like(right.whole);
     let mut low = zeros_like(right.whole);
     let mut spills = vec![Upper::ZERO; cols];
@@ -245,7 +214,7 @@ pub(super) fn accurate_product(left: &Left, right: &Right<'_>) -> Accurate {
             continue;
         }
         let mut exact = zeros_like(right.whole);
-        add_product(&mut exact, a, x, &mut packing);
+        add_product(&mut exact, a, x, watch)?;
         absorb(&mut high, &mut low, &exact, &mut spills);
     }
     let rounding = Rounding::new(4 * order, order, right.whole.is_complex());
@@ -261,7 +230,7 @@ pub(super) fn accurate_product(left: &Left, right: &Right<'_>) -> Accurate {
         if is_zero(a) || is_zero(x) {
             continue;
         }
-        add_product(&mut rest, a, x, &mut packing);
+        add_product(&mut rest, a, x, watch)?;
         let (_, norm) = column_norms(a);
         for (size, column) in sizes.iter_mut().zip(column_norms(x).0) {
             *size = size.plus(norm.times(column));
@@ -279,7 +248,7 @@ pub(super) fn accurate_product(left: &Left, right: &Right<'_>) -> Accurate {
                 .plus(left.missing.times(whole[k]))
         })
         .collect();
-    Accurate { high, low, loss }
+    Ok(Accurate { high, low, loss })
 }
 
 #[cfg(test)]
@@ -288,6 +257,7 @@ mod tests {
     use super::super::norms::Norms;
     use super::super::tests::support::Stream;
     use super::*;
+    use crate::control::Unattended;
     use crate::num::Dyadic;
 
     fn exact(x: f64) -> Dyadic {
@@ -341,7 +311,11 @@ mod tests {
             let x = random(order, complex, &mut stream, false);
             let left = Left::new(&high, low.clone(), Upper::ZERO);
             let right = Right::new(&x);
-            let mut product = accurate_product(&left, &right);
+            let mut watch = Watch {
+                control: &mut Unattended,
+                done: 0.0,
+            };
+            let mut product = accurate_product(&left, &right, &mut watch).expect("not cancelled");
             let values: Vec<f64> = (0..order).map(|_| stream.next()).collect();
             subtract_scaled(&mut product, &Accurate::exactly(&x), &values);
             let size = Norms::of(&high).frobenius.times(Norms::of(&x).frobenius);

@@ -24,6 +24,7 @@ use super::block;
 use super::enclosure::Theorem;
 use super::frame::Frame;
 use super::norms::{column_norms, Norms, Rounding};
+use super::products::{Cancelled, Watch};
 use super::residual::Gram;
 use super::slices::{accurate_product, Left, Right};
 use super::spectrum::Spectrum;
@@ -51,11 +52,21 @@ pub(super) struct Certificate<'a> {
 /// overflows or φ is too large, so that the quick one stands.
 ///
 /// Cost: ten plain products and the two of G and F for M = I; twenty for a pair.
-pub(super) fn tight(problem: &Problem, frame: &Frame, gram: &Gram) -> Option<Spectrum> {
-    let certificate = Certificate::new(problem, frame, gram)?;
-    let mut spectrum = certificate.linear()?;
+pub(super) fn tight(
+    problem: &Problem,
+    frame: &Frame,
+    gram: &Gram,
+    watch: &mut Watch<'_>,
+) -> Result<Option<Spectrum>, Cancelled> {
+    let Some(certificate) = Certificate::new(problem, frame, gram, watch)? else {
+        return Ok(None);
+    };
+    let Some(mut spectrum) = certificate.linear() else {
+        return Ok(None);
+    };
     spectrum.ascend();
     for group in spectrum.groups() {
+        watch.check()?;
         if group.start() == group.end() {
             certificate.temple_kato(*group.start(), &mut spectrum);
         } else {
@@ -63,22 +74,28 @@ pub(super) fn tight(problem: &Problem, frame: &Frame, gram: &Gram) -> Option<Spe
         }
     }
     spectrum.ascend();
-    Some(spectrum)
+    Ok(Some(spectrum))
 }
 
 impl<'a> Certificate<'a> {
-    fn new(problem: &Problem, frame: &'a Frame, gram: &'a Gram) -> Option<Self> {
+    fn new(
+        problem: &Problem,
+        frame: &'a Frame,
+        gram: &'a Gram,
+        watch: &mut Watch<'_>,
+    ) -> Result<Option<Self>, Cancelled> {
         let order = frame.order;
         let right = Right::new(&frame.vectors);
         let weighted = match (&frame.metric, &problem.metric) {
             (Some(metric), Some(typed)) => {
-                let (low, missing) = frame.low_parts(typed, frame.metric_scale);
-                accurate_product(&Left::new(metric, low, missing), &right)
+                let (low, missing) = frame.low_parts(typed, metric, frame.metric_scale);
+                accurate_product(&Left::new(metric, low, missing), &right, watch)?
             }
             _ => Accurate::exactly(&frame.vectors),
         };
-        let (low, missing) = frame.low_parts(&problem.matrix, frame.matrix_scale);
-        let mut residual = accurate_product(&Left::new(&frame.matrix, low, missing), &right);
+        let (low, missing) = frame.low_parts(&problem.matrix, &frame.matrix, frame.matrix_scale);
+        let mut residual =
+            accurate_product(&Left::new(&frame.matrix, low, missing), &right, watch)?;
         subtract_scaled(&mut residual, &weighted, &frame.values);
         residual.renormalise();
         let coupling = adjoint_product(&frame.vectors, &residual.high);
@@ -101,7 +118,7 @@ impl<'a> Certificate<'a> {
             .spectral
             .plus(root_sum_square(coupling_loss.iter().copied()));
         let usable = coupling_norm.is_known() && gram.defect.get() < LARGEST_DEFECT;
-        usable.then_some(Self {
+        Ok(usable.then_some(Self {
             frame,
             gram,
             weighted,
@@ -109,7 +126,7 @@ impl<'a> Certificate<'a> {
             coupling,
             coupling_loss,
             coupling_norm,
-        })
+        }))
     }
 
     /// A double not above 1 − φ.

@@ -6,14 +6,17 @@ use super::run::ReductionRun;
 impl ReductionRun {
     /// What is needed to go on from here: the trailing triangle, packed.
     pub(crate) fn checkpoint(&self) -> Checkpoint {
-        let packed = |plane: &[f64]| -> Vec<f64> {
-            let columns = plane.chunks_exact(self.stride.max(1)).enumerate();
-            columns
-                .take(self.order)
-                .skip(self.done)
-                .flat_map(|(col, column)| &column[col..self.order])
-                .copied()
-                .collect()
+        let left = self.order - self.done;
+        let packed = |plane: &[f64]| {
+            let mut packed = Vec::new();
+            if !plane.is_empty() {
+                packed.reserve_exact(left * (left + 1) / 2);
+                for col in self.done..self.order {
+                    let column = &plane[col * self.stride..][col..self.order];
+                    packed.extend_from_slice(column);
+                }
+            }
+            packed
         };
         Checkpoint {
             order: self.order,

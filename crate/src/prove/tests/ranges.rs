@@ -1,6 +1,7 @@
 //! Ranges over tolerances, against sampled corners.
 
 use super::support::*;
+use crate::control::Unattended;
 use crate::entry::cell::CellValue;
 use crate::matrix::ExactMatrix;
 use crate::num::{ExactReal, Toward};
@@ -50,6 +51,7 @@ fn corners_of_the_tolerances_never_leave_the_ranges() {
             &approximate(problem, 0),
             assembly.tolerances.as_ref(),
             assembly.metric_tolerances.as_ref(),
+            &mut Unattended,
         )
         .expect("a metric far from singular");
         for corner in 0..16 {
@@ -116,6 +118,7 @@ fn a_diagonal_tolerance_gives_its_own_range() {
         &approximate(problem, 0),
         assembly.tolerances.as_ref(),
         None,
+        &mut Unattended,
     );
     let ranges = ranges.expect("M is the identity");
     let width = |k: usize| (ranges[k].upper() - ranges[k].lower()).to_f64(Toward::Up);
