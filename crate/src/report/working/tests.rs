@@ -145,7 +145,10 @@ fn residual_bounds_are_of_the_size_rounding_leaves() {
         let bound = run.residual_bound(k).expect("a bound");
         // The solver leaves a small multiple of n·u·‖A‖, the bound on the
         // measuring itself about as much.
-        assert!(0.0 < bound && bound < 100.0 * 8.0 * f64::EPSILON * norm, "{k}: {bound} of {norm}");
+        assert!(
+            0.0 < bound && bound < 100.0 * 8.0 * f64::EPSILON * norm,
+            "{k}: {bound} of {norm}"
+        );
     }
     for fact in crate::report::values::checks(&run) {
         let figure: f64 = fact.figure.replace('−', "-").parse().expect("a number");
