@@ -108,3 +108,30 @@ export async function sentences(page) {
   await said.first().waitFor({ timeout: PATIENCE_MS });
   return (await said.allTextContents()).map((text) => text.trim());
 }
+
+/** The eigenvalues as the page prints them, the uncertain last digit included. */
+async function printedValues(page) {
+  const figures = await page.locator('#eigenpairs .value .digits.aligned').allTextContents();
+  return figures.map((figure) => figure.trim().replace('\u2212', '-').replace(/\(\d+\)/, ''));
+}
+
+/**
+ * Waits until the page prints these eigenvalues, each to the digits it prints.
+ *
+ * At least six significant digits are asked for: they tell these values apart.
+ */
+export async function assertValues(page, expected) {
+  const agree = (printed) =>
+    printed.length === expected.length &&
+    printed.every((text, index) => {
+      const scale = Math.max(Math.abs(expected[index]), 1);
+      return text !== '' && Math.abs(Number(text) - expected[index]) <= 1e-6 * scale;
+    });
+  const deadline = Date.now() + PATIENCE_MS;
+  let printed = await printedValues(page);
+  while (!agree(printed) && Date.now() < deadline) {
+    await page.waitForTimeout(100);
+    printed = await printedValues(page);
+  }
+  assert.ok(agree(printed), `expected ${expected.join(', ')}, the page prints ${printed.join(', ')}`);
+}

@@ -6,6 +6,7 @@ use std::process::Command;
 
 use anyhow::{Context, Result};
 
+use super::outside;
 use super::tally::{counted, Tally};
 use crate::console;
 use crate::debian;
@@ -21,7 +22,12 @@ const CHROMIUM: [&str; 4] = ["chromium", "chromium-browser", "google-chrome", "c
 pub fn served(layout: &Layout) -> Result<Tally> {
     let server = serve::start(&layout.dist, 0)?;
     let mut command = scenarios(layout, "tests/browser/served")?;
-    counted(command.env("PAGE_ADDRESS", &server.address))
+    let examples = outside::compile_examples(layout)?;
+    counted(
+        command
+            .env("PAGE_ADDRESS", &server.address)
+            .env("EIGENLEDGER_EXAMPLES", examples),
+    )
 }
 
 /// The scenarios on the single file, opened without a server.

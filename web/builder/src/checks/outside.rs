@@ -12,13 +12,7 @@ use crate::layout::Layout;
 /// Runs every script `tests/outside/check_*.py`; each prints its own counts.
 pub fn check(layout: &Layout) -> Result<Tally> {
     let python = environment(layout)?;
-    let cargo = std::env::var("CARGO").unwrap_or_else(|_| "cargo".to_owned());
-    say("Compiling the programs that the outside checks ask.");
-    console::run(&mut console::command_in(
-        &layout.root,
-        &cargo,
-        &["build", "--quiet", "--package", "eigenledger", "--examples"],
-    ))?;
+    let examples = compile_examples(layout)?;
     let folder = layout.root.join("tests/outside");
     let mut scripts: Vec<PathBuf> = fs::read_dir(&folder)?
         .filter_map(|entry| Some(entry.ok()?.path()))
@@ -33,11 +27,24 @@ pub fn check(layout: &Layout) -> Result<Tally> {
         let script = script.to_string_lossy().into_owned();
         let mut command = console::command_in(&layout.root, &python.to_string_lossy(), &[&script]);
         command
-            .env("EIGENLEDGER_EXAMPLES", layout.target.join("debug/examples"))
+            .env("EIGENLEDGER_EXAMPLES", &examples)
             .env("PYTHONDONTWRITEBYTECODE", "1");
         total = total + counted(&mut command)?;
     }
     Ok(total)
+}
+
+/// Compiles the crate's example programs, which other programs ask for our
+/// answers; returns their folder.
+pub fn compile_examples(layout: &Layout) -> Result<PathBuf> {
+    let cargo = std::env::var("CARGO").unwrap_or_else(|_| "cargo".to_owned());
+    say("Compiling the programs that the outside checks ask.");
+    console::run(&mut console::command_in(
+        &layout.root,
+        &cargo,
+        &["build", "--quiet", "--package", "eigenledger", "--examples"],
+    ))?;
+    Ok(layout.target.join("debug/examples"))
 }
 
 /// The interpreter of `tests/.venv`, made or brought in step with the pinned

@@ -27,7 +27,8 @@ function changeMatrix(matrix: string): void {
 }
 
 function changeMetric(metric: string): void {
-  if (metric !== sheet.value.value.metric) changeDocument({ metric });
+  // An editor emptied because the metric was taken away must not bring one back.
+  if (metric !== (sheet.value.value.metric ?? '')) changeDocument({ metric });
 }
 
 function choose(change: Partial<(typeof sheet.value.value)['choices']>): void {
