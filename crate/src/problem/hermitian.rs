@@ -50,7 +50,7 @@ pub enum AsymmetrySize {
 pub struct Asymmetry {
     /// Which matrix.
     pub part: Part,
-    /// The first pairs that disagree, row by row, at most [`LISTED`].
+    /// The first pairs that disagree, row by row, up to a cap.
     pub pairs: Vec<Disagreement>,
     /// How many disagree in all, diagonal cells included.
     pub count: usize,
