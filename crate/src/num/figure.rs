@@ -358,7 +358,7 @@ mod tests {
         assert_eq!(around(12345.0, 30.0), "1.23(1)e4");
         let wide = Dyadic::new(IBig::from(3), 3000);
         assert_eq!(bounded(&wide, &wide, Some(5)), "3.6907(1)e903");
-        assert_eq!(bounded(&exact(1.0 / 3.0), &exact(0.34), Some(2)), "0.33(1)");
+        assert_eq!(bounded(&exact(1.0 / 3.0), &exact(0.34), Some(2)), "0.34(1)");
     }
 
     #[test]
