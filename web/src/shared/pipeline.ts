@@ -33,7 +33,7 @@ async function run(): Promise<void> {
       latestReading.value = { revision, value: read };
       if (read.ready) {
         const report = callback((stage: string, done: number) => {
-          if (isCurrent()) work.value = { state: 'busy', stage, done };
+          if (running && isCurrent()) work.value = { state: 'busy', stage, done };
         });
         const solved = await bench.solve(report);
         if (!isCurrent()) return;

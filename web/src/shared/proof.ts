@@ -51,9 +51,10 @@ async function under<T>(name: string, use: (bench: RemoteWorkbench) => Promise<T
   }
 }
 
+/** A report may arrive after the answer it belongs to: then no proof is under way. */
 function progress(revision: number) {
   return callback((stage: string, done: number) => {
-    if (sheet.value.revision === revision) work.value = { state: 'busy', stage, done };
+    if (proving.value !== null && sheet.value.revision === revision) work.value = { state: 'busy', stage, done };
   });
 }
 
