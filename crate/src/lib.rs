@@ -11,38 +11,33 @@
 //!                                           claim ◀───────────────────┤───────────────────▶ report, link
 //! ```
 //!
+//! The three stages from doubles to eigenpairs, with their ledger, are the package
+//! `eigenledger-solver`, handed on here under their own names.
+//!
 //! What is *not* proved: the model behind the matrix, and the conformance of
 //! the processor and compiler to IEEE 754 binary64 with round to nearest.
 
-// As wasm, the tests run under a harness of our own (`wasm_harness` says why).
+// As wasm, the tests run under a harness of our own (its package says why).
 #![cfg_attr(
     all(test, target_arch = "wasm32"),
-    feature(custom_test_frameworks, test),
-    test_runner(crate::wasm_harness::keep)
+    feature(custom_test_frameworks),
+    test_runner(eigenledger_wasm_harness::keep)
 )]
 
+pub use eigenledger_solver::{control, iterate, ledger, pairs, reduce, residuals, solve};
+
 pub mod claim;
-pub mod control;
 pub mod document;
 pub mod entry;
 pub mod exact;
 pub mod fingerprint;
-pub mod iterate;
-pub mod ledger;
 pub mod link;
 pub mod matrix;
 pub mod num;
-pub mod pairs;
 pub mod problem;
 pub mod prove;
-pub mod reduce;
 pub mod report;
-pub mod residuals;
 pub mod sensitivity;
-pub mod solve;
 
 #[cfg(target_arch = "wasm32")]
 pub mod browser;
-
-#[cfg(all(test, target_arch = "wasm32"))]
-mod wasm_harness;

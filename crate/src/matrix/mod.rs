@@ -1,12 +1,6 @@
-//! Storage and kernels.
+//! Matrices of exact cells, beside the solver's matrices of doubles.
 
-pub mod dense;
 pub mod exact;
-pub mod kernels;
-pub mod lanes;
-pub mod norms;
-mod packing;
-mod tile;
 
-pub use dense::Dense;
+pub use eigenledger_solver::matrix::*;
 pub use exact::ExactMatrix;

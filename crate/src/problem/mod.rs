@@ -21,7 +21,9 @@ pub use hermitian::{Adjustment, Asymmetry, AsymmetrySize, Disagreement, Mirror};
 pub use metric::{metric_check, MetricFault, MetricVerdict};
 pub use tolerances::Tolerances;
 
-use crate::matrix::{Dense, ExactMatrix};
+pub use eigenledger_solver::rounded::Rounded;
+
+use crate::matrix::ExactMatrix;
 
 /// A x = λ x, or A x = λ M x when there is a metric.
 #[derive(Clone, Debug)]
@@ -30,19 +32,6 @@ pub struct Problem {
     pub matrix: ExactMatrix,
     /// M, exactly Hermitian; its definiteness is proved later, not assumed.
     pub metric: Option<ExactMatrix>,
-}
-
-/// The problem in doubles: each entry of 2^−scale · A rounded to nearest.
-#[derive(Clone, Debug)]
-pub struct Rounded {
-    /// A · 2^−matrix_scale, to nearest, full (both triangles).
-    pub matrix: Dense,
-    /// Power of two taken out of A.
-    pub matrix_scale: i32,
-    /// M · 2^−metric_scale, to nearest.
-    pub metric: Option<Dense>,
-    /// Power of two taken out of M.
-    pub metric_scale: i32,
 }
 
 /// Which of the two matrices of a problem.

@@ -38,11 +38,12 @@ fn compile(layout: &Layout, target: &WasmTarget) -> Result<PathBuf> {
         "--lib",
         "--crate-type",
         "cdylib",
-        "--release",
+        "--profile",
+        "module",
     ]);
     console::run(&mut command)?;
     Ok(target
         .target_dir(layout)
         .join(TARGET)
-        .join("release/eigenledger.wasm"))
+        .join("module/eigenledger.wasm"))
 }

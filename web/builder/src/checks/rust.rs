@@ -90,11 +90,16 @@ pub fn builder_tests(layout: &Layout) -> Result<Tally> {
     ))
 }
 
-/// The crate's unit tests once more, as wasm in Node.
+/// The unit tests of the mathematics once more, as wasm in Node.
 pub fn wasm_tests(layout: &Layout) -> Result<Tally> {
     let target = WasmTarget::find()?;
-    let compiled = compile_wasm_tests(layout, &target)?;
-    let folder = target.target_dir(layout).join("wasm-tests");
+    let solver = wasm_tests_of("eigenledger-solver", layout, &target)?;
+    Ok(solver + wasm_tests_of("eigenledger", layout, &target)?)
+}
+
+fn wasm_tests_of(package: &str, layout: &Layout, target: &WasmTarget) -> Result<Tally> {
+    let compiled = compile_wasm_tests(package, layout, target)?;
+    let folder = target.target_dir(layout).join("wasm-tests").join(package);
     Bindgen::new()
         .input_path(&compiled)
         .out_name("tests")
@@ -111,21 +116,21 @@ pub fn wasm_tests(layout: &Layout) -> Result<Tally> {
     ))
 }
 
-fn compile_wasm_tests(layout: &Layout, target: &WasmTarget) -> Result<PathBuf> {
+fn compile_wasm_tests(package: &str, layout: &Layout, target: &WasmTarget) -> Result<PathBuf> {
     let mut command = target.cargo(layout, "test");
-    // The harness needs a compiler feature, which this opens for one crate.
+    // The harness needs a compiler feature, which this opens for our crates.
     command.env("RUSTC_BOOTSTRAP", bootstrap(target)).args([
         "--quiet",
         "--no-run",
         "--package",
-        "eigenledger",
+        package,
         "--lib",
         "--message-format",
         "json",
     ]);
     let output = command.stderr(std::process::Stdio::inherit()).output()?;
     if !output.status.success() {
-        bail!("the crate's tests do not compile for {TARGET}");
+        bail!("the tests of {package} do not compile for {TARGET}");
     }
     let messages = String::from_utf8_lossy(&output.stdout);
     executable_in(&messages).context("Cargo named no compiled test module")
@@ -133,7 +138,7 @@ fn compile_wasm_tests(layout: &Layout, target: &WasmTarget) -> Result<PathBuf> {
 
 const fn bootstrap(target: &WasmTarget) -> &'static str {
     match target {
-        WasmTarget::Installed => "eigenledger",
+        WasmTarget::Installed => "eigenledger,eigenledger_solver,eigenledger_wasm_harness",
         // Building the standard library needs it for every crate.
         WasmTarget::Debian { .. } => "1",
     }

@@ -25,7 +25,7 @@ use crate::reduce::Reduction;
 use std::fmt;
 
 /// Approximate eigenpairs of the *scaled* problem (see
-/// [`crate::problem::Rounded`]); λ = value · 2^`scale`.
+/// [`crate::rounded::Rounded`]); λ = value · 2^`scale`.
 #[derive(Clone, Debug)]
 pub struct Approximation {
     /// Approximate eigenvalues of the scaled problem, ascending; length n.

@@ -29,7 +29,7 @@ use crate::control::{Control, Flow, Stage};
 use crate::ledger::{Event, Listening, Recorder, Totals};
 use crate::matrix::norms::{length, power_of_two};
 use crate::matrix::Dense;
-use crate::problem::Rounded;
+use crate::rounded::Rounded;
 use gauge::Gauge;
 
 /// A real symmetric tridiagonal matrix.

@@ -28,7 +28,8 @@ const ROWS: usize = 64;
 
 /// How an operand enters the product.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub(crate) enum Orientation {
+pub enum Orientation {
+    /// As it stands.
     AsStored,
     /// Transposed, and conjugated if complex.
     Transposed,
@@ -36,8 +37,10 @@ pub(crate) enum Orientation {
 
 /// What happens to the target.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub(crate) enum Update {
+pub enum Update {
+    /// The product is added to it.
     Add,
+    /// The product is subtracted from it.
     Subtract,
 }
 
@@ -59,35 +62,46 @@ pub(crate) struct SplitTarget<'a> {
 
 /// One plane of an operand, for products of planes.
 #[derive(Clone, Copy)]
-pub(crate) struct Plane<'a> {
+pub struct Plane<'a> {
+    /// Entry (i, j) as stored is `data[i + j·stride]`.
     pub data: &'a [f64],
+    /// From a column to the next; at least the rows.
     pub stride: usize,
+    /// How it enters.
     pub orientation: Orientation,
 }
 
 /// One plane of a target.
-pub(crate) struct Target<'a> {
+pub struct Target<'a> {
+    /// Entry (i, j) is `data[i + j·stride]`.
     pub data: &'a mut [f64],
+    /// From a column to the next; at least the rows.
     pub stride: usize,
 }
 
 /// Shape of a product: op(A) is `rows` × `inner`, B is `inner` × `cols`.
 #[derive(Clone, Copy)]
-pub(crate) struct Shape {
+pub struct Shape {
+    /// Rows of op(A) and of the target.
     pub rows: usize,
+    /// Columns of op(B) and of the target.
     pub cols: usize,
+    /// Columns of op(A), rows of op(B).
     pub inner: usize,
 }
 
 /// Room for packed operands, kept between products.
 #[derive(Default)]
-pub(crate) struct Packing {
+pub struct Packing {
     left: [Vec<f64>; 2],
     right: [Vec<f64>; 2],
 }
 
 /// C ← C ± op(A) op(B) on one plane each. Cost: 2·rows·cols·inner operations.
-pub(crate) fn accumulate(
+///
+/// # Panics
+/// If a slice is shorter than its shape and stride say.
+pub fn accumulate(
     shape: Shape,
     update: Update,
     left: Plane<'_>,

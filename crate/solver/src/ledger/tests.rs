@@ -1,6 +1,6 @@
 use super::*;
 use crate::control::Unattended;
-use crate::problem::Rounded;
+use crate::rounded::Rounded;
 use crate::solve::{cases, solve};
 
 /// Captures every state of the run itself, as the run shows it to its recorder.

@@ -2,8 +2,8 @@ use super::*;
 use crate::control::Unattended;
 use crate::iterate::{iterate, Limits};
 use crate::ledger::Silent;
-use crate::problem::Rounded;
 use crate::reduce::reduce;
+use crate::rounded::Rounded;
 use crate::solve::cases;
 
 /// How often each road is taken is part of what is claimed about the cost.

@@ -10,7 +10,7 @@ use crate::matrix::kernels::{adjoint_product, product, DEPTH};
 use crate::matrix::norms::norm2;
 use crate::matrix::Dense;
 use crate::pairs::Approximation;
-use crate::problem::Rounded;
+use crate::rounded::Rounded;
 
 /// A norm as computed, and how far rounding may have moved it:
 /// the exact norm, for the rounded problem and the given pairs, lies within

@@ -1,11 +1,15 @@
-//! Runs the crate's own tests as wasm: the same functions, from the same
+//! Runs a package's own tests as wasm: the same functions, from the same
 //! source, one call each.
 //!
 //! The standard harness has no way to print, to take arguments or to survive a
 //! failing test on wasm32-unknown-unknown. This one only keeps the list that
 //! the compiler makes; the host asks for the names, runs the tests one by one,
-//! and makes a fresh instance after one that trapped. Compiled for tests
-//! alone, with the compiler feature `custom_test_frameworks`.
+//! and makes a fresh instance after one that trapped. Compiled for wasm32 and
+//! for tests alone, with the compiler features `test` and, in the package under
+//! test, `custom_test_frameworks`.
+
+#![cfg(target_arch = "wasm32")]
+#![feature(test)]
 
 use std::cell::OnceCell;
 

@@ -3,6 +3,7 @@ use super::*;
 use crate::control::Unattended;
 use crate::ledger::{Ledger, Silent};
 use crate::matrix::kernels::{adjoint_product, product};
+use crate::matrix::Dense;
 use nalgebra::DMatrix;
 
 const UNIT: f64 = f64::EPSILON / 2.0;
