@@ -21,7 +21,7 @@ const USAGE: &str = "\
 cargo page serve [--port N]   build, then serve dist/ on this machine
 cargo page build              build dist/ and the single file dist/eigenledger.html
 cargo page test [STEP]       run every check, or those steps whose name contains STEP
-cargo page bench             print the table of speeds, peers beside us";
+cargo page bench [--keep]    print the tables of speeds, peers beside us; --keep renews the README's curve";
 
 fn main() -> ExitCode {
     let words: Vec<String> = std::env::args().skip(1).collect();
@@ -48,7 +48,8 @@ fn run(words: &[String]) -> Result<ExitCode> {
             };
             serve::build_and_serve(&layout, port)?;
         }
-        ["bench"] => bench::run(&layout)?,
+        ["bench"] => bench::run(&layout, false)?,
+        ["bench", "--keep"] => bench::run(&layout, true)?,
         ["test"] => return checks::run(&layout, ""),
         ["test", filter] => return checks::run(&layout, filter),
         _ => {

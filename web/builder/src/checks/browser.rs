@@ -37,7 +37,8 @@ pub fn single_file(layout: &Layout) -> Result<Tally> {
     counted(command.env("PAGE_ADDRESS", address))
 }
 
-fn scenarios(layout: &Layout, folder: &str) -> Result<Command> {
+/// Node, told to run every scenario of a folder.
+pub fn scenarios(layout: &Layout, folder: &str) -> Result<Command> {
     page::install_packages_in(&layout.root.join("tests"), "the browser tests")?;
     let chromium = chromium()?;
     let mut command = console::command_in(

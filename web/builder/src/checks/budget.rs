@@ -41,5 +41,6 @@ pub fn check(layout: &Layout) -> Result<Tally> {
     Ok(Tally {
         passed,
         failed: verdicts.len() - passed,
+        ..Tally::default()
     })
 }

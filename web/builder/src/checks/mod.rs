@@ -6,7 +6,8 @@
 
 pub mod browser;
 mod budget;
-mod outside;
+mod engines;
+pub mod outside;
 mod rust;
 mod tally;
 
@@ -36,7 +37,7 @@ enum Needs {
 }
 
 /// Cheap steps first, so that a slip of the pen is heard of early.
-const STEPS: [Step; 12] = [
+const STEPS: [Step; 13] = [
     Step {
         name: "format",
         needs: Needs::Sources,
@@ -96,6 +97,11 @@ const STEPS: [Step; 12] = [
         name: "single file",
         needs: Needs::Page,
         run: browser::single_file,
+    },
+    Step {
+        name: "engines",
+        needs: Needs::Page,
+        run: engines::check,
     },
 ];
 

@@ -47,6 +47,12 @@ pub fn compile_examples(layout: &Layout) -> Result<PathBuf> {
     Ok(layout.target.join("debug/examples"))
 }
 
+/// The interpreter of `tests/.venv`, if that was made before.
+pub fn existing_environment(layout: &Layout) -> Option<PathBuf> {
+    let python = layout.root.join("tests/.venv/bin/python");
+    python.is_file().then_some(python)
+}
+
 /// The interpreter of `tests/.venv`, made or brought in step with the pinned
 /// requirements first.
 fn environment(layout: &Layout) -> Result<PathBuf> {

@@ -9,29 +9,31 @@ use anyhow::{Context, Result};
 
 use crate::console;
 
-/// How many checks passed and failed.
+/// How many checks passed, failed and could not be made on this machine.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
 pub struct Tally {
     /// Those that passed.
     pub passed: usize,
     /// Those that failed.
     pub failed: usize,
+    /// Those left out, each after a sentence saying why.
+    pub skipped: usize,
 }
 
 impl Tally {
     /// A check that counts as one, passed.
-    pub const fn one_passed() -> Self {
+    pub fn one_passed() -> Self {
         Self {
             passed: 1,
-            failed: 0,
+            ..Self::default()
         }
     }
 
     /// A check that counts as one, failed.
-    pub const fn one_failed() -> Self {
+    pub fn one_failed() -> Self {
         Self {
-            passed: 0,
             failed: 1,
+            ..Self::default()
         }
     }
 }
@@ -43,13 +45,18 @@ impl Add for Tally {
         Self {
             passed: self.passed + other.passed,
             failed: self.failed + other.failed,
+            skipped: self.skipped + other.skipped,
         }
     }
 }
 
 impl fmt::Display for Tally {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(f, "{} passed, {} failed", self.passed, self.failed)
+        write!(f, "{} passed, {} failed", self.passed, self.failed)?;
+        if self.skipped > 0 {
+            write!(f, ", {} left out", self.skipped)?;
+        }
+        Ok(())
     }
 }
 
@@ -85,7 +92,7 @@ pub fn counted(command: &mut Command) -> Result<Tally> {
     let status = child.wait()?;
     // A program that was ended, or that counted nothing, has proved nothing.
     let silent_failure = !status.success() && tally.failed == 0;
-    if silent_failure || tally == Tally::default() {
+    if silent_failure || tally.passed + tally.failed == 0 {
         tally.failed += 1;
     }
     Ok(tally)
@@ -99,20 +106,16 @@ fn counts_in(line: &str) -> Option<Tally> {
         .split_whitespace()
         .map(|word| word.trim_end_matches([',', ';']))
         .collect();
-    match words.as_slice() {
-        ["\u{2139}", "pass", passed] => {
-            return Some(Tally {
-                passed: passed.parse().ok()?,
-                failed: 0,
-            })
-        }
-        ["\u{2139}", "fail", failed] => {
-            return Some(Tally {
-                passed: 0,
-                failed: failed.parse().ok()?,
-            })
-        }
-        _ => {}
+    if let ["\u{2139}", kind, count] = words.as_slice() {
+        let mut counts = Tally::default();
+        let field = match *kind {
+            "pass" => &mut counts.passed,
+            "fail" => &mut counts.failed,
+            "skipped" => &mut counts.skipped,
+            _ => return None,
+        };
+        *field = count.parse().ok()?;
+        return Some(counts);
     }
     let place = words
         .windows(4)
@@ -120,6 +123,7 @@ fn counts_in(line: &str) -> Option<Tally> {
     Some(Tally {
         passed: words[place].parse().ok()?,
         failed: words[place + 2].parse().ok()?,
+        ..Tally::default()
     })
 }
 
@@ -129,30 +133,26 @@ mod tests {
 
     #[test]
     fn counts_are_read_from_every_runner_used() {
-        let expected = Some(Tally {
-            passed: 3,
-            failed: 1,
-        });
-        assert_eq!(
-            counts_in("test result: FAILED. 3 passed; 1 failed; 0 ignored; 0 measured"),
-            expected
-        );
-        assert_eq!(counts_in("3 passed, 1 failed, 7 skipped"), expected);
-        assert_eq!(counts_in("3 passed, 1 failed"), expected);
-        assert_eq!(
-            counts_in("\u{2139} pass 3"),
+        let expected = |passed, failed, skipped| {
             Some(Tally {
-                passed: 3,
-                failed: 0
+                passed,
+                failed,
+                skipped,
             })
-        );
-        assert_eq!(
-            counts_in("\u{2139} fail 1"),
-            Some(Tally {
-                passed: 0,
-                failed: 1
-            })
-        );
+        };
+        for (line, counts) in [
+            (
+                "test result: FAILED. 3 passed; 1 failed; 0 ignored; 0 measured",
+                expected(3, 1, 0),
+            ),
+            ("3 passed, 1 failed, 7 skipped", expected(3, 1, 0)),
+            ("3 passed, 1 failed", expected(3, 1, 0)),
+            ("\u{2139} pass 3", expected(3, 0, 0)),
+            ("\u{2139} fail 1", expected(0, 1, 0)),
+            ("\u{2139} skipped 2", expected(0, 0, 2)),
+        ] {
+            assert_eq!(counts_in(line), counts, "{line:?}");
+        }
     }
 
     #[test]
