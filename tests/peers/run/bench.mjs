@@ -15,6 +15,7 @@ import { join } from 'node:path';
 import { startBrowser } from '../../browser/harness.mjs';
 import { coldStart } from './cold-start.mjs';
 import { growthCurve } from './growth.mjs';
+import { throughput } from './throughput.mjs';
 import { COLUMNS, NATIVE, OURS, PEERS, conclusions, conclusionsText, heading, rowName, rowText } from './table.mjs';
 
 const ORDERS = [2, 3, 10, 20, 50, 100, 200, 400, 1000];
@@ -106,6 +107,10 @@ async function measuredShipped(browser, page) {
   console.log(`  exact road at order 8, whole numbers of three digits: ${milliseconds(found.exact.milliseconds)}`);
   found.coldStart = await coldStart(browser, site, 9);
   console.log(`  first visit, from navigation to the first eigenvalues: ${milliseconds(found.coldStart.milliseconds)}`);
+  found.throughput = await throughput(browser, site, [1, 2]);
+  for (const { workers, order, perSecond } of found.throughput) {
+    console.log(`  batch of order ${String(order)}, workers: ${String(workers)}: ${perSecond.toFixed(0)} problems a second`);
+  }
   return found;
 }
 

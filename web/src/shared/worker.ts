@@ -1,18 +1,18 @@
 /**
  * The worker that holds the module, seen from the page.
  *
- * The remote object is the Rust `Workbench` itself: a method added there can
- * be called here without another line. A long call is cancelled by ending the
+ * The remote object extends the Rust `Workbench`: a method added there can be
+ * called here without another line. A long call is cancelled by ending the
  * worker; a worker that crashed is replaced. In both cases the document is
  * untouched, since the page owns it.
  */
 import * as Comlink from 'comlink';
 
-import type { Workbench } from './generated/eigenledger';
+import { openStation, type RemoteWorkbench } from '../worker/open';
 import { compiledModule, startWorker } from './parts';
 import { work } from './store';
 
-export type RemoteWorkbench = Comlink.Remote<Workbench>;
+export type { RemoteWorkbench };
 
 /** The call was given up because its worker was ended. */
 export class Ended extends Error {
@@ -40,22 +40,12 @@ async function start(): Promise<Running> {
   });
   // Nobody may be waiting when the worker is ended.
   ended.catch(() => undefined);
-  const ready = new Promise<void>((resolve, reject) => {
-    worker.addEventListener('message', (event) => {
-      if (event.data === 'ready') resolve();
-      else reject(new Error(String(event.data)));
-    }, { once: true });
-    worker.addEventListener('error', (event) => {
-      reject(new Error(event.message || 'The worker could not be started.'));
-    });
-  });
   worker.addEventListener('error', (event) => {
     end(new Error(event.message || 'The worker stopped.'));
     running = null;
   });
-  worker.postMessage(module);
-  await ready;
-  return { worker, bench: Comlink.wrap<Workbench>(worker), ended, end };
+  const bench = await openStation(worker, module);
+  return { worker, bench, ended, end };
 }
 
 function current(): Promise<Running> {
