@@ -16,9 +16,9 @@ pub const EXAMPLES: &str = "examples";
 
 /// Builds everything that is served, and the single file.
 pub fn build(layout: &Layout) -> Result<()> {
-    module::build(layout)?;
     require_node()?;
     install_packages_in(&layout.web, "the page")?;
+    module::build(layout)?;
     say("Bundling the page.");
     console::run(&mut console::command_in(
         &layout.web,
