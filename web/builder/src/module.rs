@@ -32,6 +32,22 @@ pub fn build(layout: &Layout) -> Result<()> {
     shrink(layout, &layout.generated.join("eigenledger_bg.wasm"))
 }
 
+/// Where sources stand on this machine, and what to call it: the workspace, and
+/// each registry that Cargo keeps packages of.
+fn source_folders(layout: &Layout) -> Vec<(PathBuf, &'static str)> {
+    let cargo_home = std::env::var_os("CARGO_HOME").map(PathBuf::from);
+    let home = std::env::var_os("HOME").map(|home| Path::new(&home).join(".cargo"));
+    let registries = cargo_home
+        .or(home)
+        .and_then(|folder| fs::read_dir(folder.join("registry/src")).ok());
+    let packages = registries
+        .into_iter()
+        .flatten()
+        .filter_map(|entry| Some((entry.ok()?.path(), "packages")));
+    let own = (layout.root.clone(), "eigenledger");
+    packages.chain([own]).collect()
+}
+
 /// The extensions of WebAssembly that the compiler itself may use; the optimiser
 /// must not bring in others.
 const FEATURES: [&str; 7] = [
@@ -87,6 +103,13 @@ fn compile(layout: &Layout, target: &WasmTarget) -> Result<PathBuf> {
         "--profile",
         "module",
     ]);
+    // The same bytes wherever it is built: panics name their source, and that
+    // must not be a folder of this machine.
+    for (folder, name) in source_folders(layout) {
+        let remap = format!("--remap-path-prefix={}={name}", folder.display());
+        let setting = format!("target.{TARGET}.rustflags={:?}", [remap]);
+        command.args(["--config", &setting]);
+    }
     console::run(&mut command)?;
     Ok(target
         .target_dir(layout)
