@@ -66,4 +66,6 @@ pub fn solve(
 #[cfg(test)]
 pub(crate) mod cases;
 #[cfg(test)]
+mod operations;
+#[cfg(test)]
 mod tests;

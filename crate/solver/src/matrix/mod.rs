@@ -1,5 +1,6 @@
 //! Storage and kernels.
 
+pub(crate) mod counted;
 pub mod dense;
 pub mod kernels;
 pub mod lanes;

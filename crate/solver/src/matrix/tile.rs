@@ -1,5 +1,6 @@
 //! The register tile of a product: 4 × 4 entries of one plane of the target.
 
+use super::counted::count;
 use super::kernels::{Orientation, Update};
 use super::lanes::Lanes;
 
@@ -59,6 +60,7 @@ fn each_product(
     right: &[f64],
     join: impl Fn(Lanes, Lanes) -> Lanes,
 ) -> Tile {
+    count(2 * TILE * left.len());
     let left = left.as_chunks::<2>().0.as_chunks::<2>().0;
     for ([upper, lower], values) in left.iter().zip(right.as_chunks::<TILE>().0) {
         let (upper, lower) = (Lanes::load(upper), Lanes::load(lower));

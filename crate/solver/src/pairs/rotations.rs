@@ -7,6 +7,7 @@
 //! Notation: Z ← Z G, row strip by row strip.
 
 use crate::iterate::{sweep, Iteration, Rotation};
+use crate::matrix::counted::count;
 use crate::matrix::lanes::Lanes;
 use crate::reduce::Tridiagonal;
 use nalgebra::DMatrix;
@@ -116,6 +117,7 @@ fn apply(strip: &mut [f64], rotations: &[Rotation], chains: &[Chain]) {
     let columns = strip.as_chunks_mut::<STRIP>().0;
     for chain in chains {
         let rotations = &rotations[chain.start..chain.end];
+        count(6 * STRIP * rotations.len());
         match chain.step {
             Step::Right => {
                 let mut left = load(&columns[chain.first_column]);

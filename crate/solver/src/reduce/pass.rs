@@ -15,6 +15,7 @@
 //! Hammarling and Marmol, "Cache efficient bidiagonalization using BLAS 2.5
 //! operators" (2008).
 
+use crate::matrix::counted::count;
 use crate::matrix::lanes::Lanes;
 
 /// One plane pair of vectors; `im` is empty for real data.
@@ -97,6 +98,7 @@ pub(super) fn real(
 
 /// One odd column: its diagonal entry, then whole pairs of rows.
 fn real_column(column: &mut [f64], col: usize, v: &[f64], w: &[f64], x: &[f64], y: &mut [f64]) {
+    count(8 * (column.len() - col));
     let (v_col, w_col, x_col) = (v[col], w[col], x[col]);
     column[col] = updated(column[col], v_col, w_col, v_col, w_col);
     let mut dot = column[col] * x_col;
@@ -119,6 +121,7 @@ fn real_columns(
     x: &[f64],
     y: &mut [f64],
 ) {
+    count(16 * (left.len() - col));
     let next = col + 1;
     left[col] = updated(left[col], v[col], w[col], v[col], w[col]);
     left[next] = updated(left[next], v[next], w[next], v[col], w[col]);
@@ -183,6 +186,7 @@ pub(super) fn complex(
 
 #[inline(always)]
 fn complex_column(a: Planes<'_>, col: usize, v: &Split, w: &Split, x: &Split, y: &mut Split) {
+    count(32 * (a.re.len() - col));
     let at = |s: &Split, i: usize| (s.re[i], s.im[i]);
     let (v_col, w_col, x_col) = (at(v, col), at(w, col), at(x, col));
     // The diagonal of a Hermitian matrix is real, and is kept so.
