@@ -13,6 +13,7 @@ mod back;
 mod convention;
 mod judge;
 mod rotations;
+mod turned;
 mod twisted;
 
 #[cfg(test)]
@@ -21,8 +22,10 @@ mod tests;
 use crate::control::{Control, Flow, Stage};
 use crate::iterate::Iteration;
 use crate::matrix::Dense;
-use crate::reduce::Reduction;
+use crate::reduce::{solve_adjoint, Reduction};
 use std::fmt;
+
+pub(crate) use turned::{Basis, LARGEST as LARGEST_TURNED};
 
 /// Approximate eigenpairs of the *scaled* problem (see
 /// [`crate::rounded::Rounded`]); λ = value · 2^`scale`.
@@ -100,27 +103,59 @@ pub fn pairs(
         });
     }
     let ascending = ascending(&iteration.values);
-    let values: Vec<f64> = ascending.iter().map(|at| iteration.values[*at]).collect();
-    let on = |control: &mut dyn Control, done: f64| match control.progress(Stage::Pairs, done) {
-        Flow::Cancel => Err(PairsError::Cancelled),
-        Flow::Continue => Ok(()),
-    };
-    on(control, 0.0)?;
+    heard(control, 0.0)?;
     let basis = match road {
         Road::Checked => twisted::vectors(&reduction.tridiagonal, iteration, &ascending).ok(),
         Road::Rotations => None,
     };
     let basis =
         basis.unwrap_or_else(|| rotations::vectors(&reduction.tridiagonal, iteration, &ascending));
-    on(control, 0.5)?;
-    let mut vectors = back::transform(reduction, basis);
+    heard(control, 0.5)?;
+    let vectors = back::transform(reduction, basis);
+    finish(reduction, iteration, &ascending, vectors, control)
+}
+
+/// Eigenpairs from a basis that was turned by the iteration's own rotations.
+///
+/// # Errors
+/// [`PairsError::Cancelled`]. Cost: O(n²), and n³ (4·n³ complex) for a pair.
+pub(crate) fn turned_pairs(
+    reduction: &Reduction,
+    iteration: &Iteration,
+    basis: Basis,
+    control: &mut dyn Control,
+) -> Result<Approximation, PairsError> {
+    heard(control, 0.0)?;
+    let ascending = ascending(&iteration.values);
+    let vectors = basis.into_vectors(&ascending);
+    finish(reduction, iteration, &ascending, vectors, control)
+}
+
+/// The metric's factor taken off Q D Z, and the phases fixed.
+fn finish(
+    reduction: &Reduction,
+    iteration: &Iteration,
+    ascending: &[usize],
+    mut vectors: Dense,
+    control: &mut dyn Control,
+) -> Result<Approximation, PairsError> {
+    if let Some(factor) = &reduction.factor {
+        solve_adjoint(factor, &mut vectors);
+    }
     convention::fix_phases(&mut vectors);
-    on(control, 1.0)?;
+    heard(control, 1.0)?;
     Ok(Approximation {
-        values,
+        values: ascending.iter().map(|at| iteration.values[*at]).collect(),
         vectors,
         scale: reduction.scale,
     })
+}
+
+fn heard(control: &mut dyn Control, done: f64) -> Result<(), PairsError> {
+    match control.progress(Stage::Pairs, done) {
+        Flow::Cancel => Err(PairsError::Cancelled),
+        Flow::Continue => Ok(()),
+    }
 }
 
 /// Positions of the values in ascending order; equal ones keep their order.

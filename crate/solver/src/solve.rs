@@ -1,9 +1,9 @@
 //! The three numerical stages in a row: reduce, iterate, pairs.
 
 use crate::control::Control;
-use crate::iterate::{iterate, IterateError, Iteration, Limits};
+use crate::iterate::{iterate, iterate_turning, IterateError, Iteration, Limits};
 use crate::ledger::Recorder;
-use crate::pairs::{pairs, Approximation, PairsError, Road};
+use crate::pairs::{pairs, turned_pairs, Approximation, Basis, PairsError, Road, LARGEST_TURNED};
 use crate::reduce::{reduce, ReduceError, Reduction};
 use crate::rounded::Rounded;
 use std::fmt;
@@ -52,8 +52,27 @@ pub fn solve(
     control: &mut dyn Control,
 ) -> Result<Solution, SolveError> {
     let reduction = reduce(rounded, recorder, control).map_err(SolveError::Reduce)?;
-    let iteration = iterate(&reduction.tridiagonal, Limits::default(), recorder, control)
+    let limits = Limits::default();
+    if reduction.order() <= LARGEST_TURNED {
+        let mut basis = Basis::of(&reduction);
+        let iteration = iterate_turning(
+            &reduction.tridiagonal,
+            limits,
+            recorder,
+            control,
+            &mut |column, rotation| basis.turn(column, rotation),
+        )
         .map_err(SolveError::Iterate)?;
+        let approximation =
+            turned_pairs(&reduction, &iteration, basis, control).map_err(SolveError::Pairs)?;
+        return Ok(Solution {
+            reduction,
+            iteration,
+            approximation,
+        });
+    }
+    let iteration =
+        iterate(&reduction.tridiagonal, limits, recorder, control).map_err(SolveError::Iterate)?;
     let approximation =
         pairs(&reduction, &iteration, Road::Checked, control).map_err(SolveError::Pairs)?;
     Ok(Solution {

@@ -70,6 +70,19 @@ pub fn iterate(
     recorder: &mut dyn Recorder,
     control: &mut dyn Control,
 ) -> Result<Iteration, IterateError> {
+    iterate_turning(tridiagonal, limits, recorder, control, &mut |_, _| {})
+}
+
+/// [`iterate`], which hands every rotation with its first column to `rotate` at
+/// once, in order of application.
+#[inline]
+pub(crate) fn iterate_turning(
+    tridiagonal: &Tridiagonal,
+    limits: Limits,
+    recorder: &mut dyn Recorder,
+    control: &mut dyn Control,
+    rotate: &mut impl FnMut(usize, Rotation),
+) -> Result<Iteration, IterateError> {
     let finite = |row: &usize| {
         let off = tridiagonal.off_diagonal.get(*row).copied().unwrap_or(0.0);
         !(tridiagonal.diagonal[*row].is_finite() && off.is_finite())
@@ -117,7 +130,7 @@ pub fn iterate(
                 sweeps: work.sweeps.len(),
             });
         }
-        work.sweep(block, recorder);
+        work.sweep(block, recorder, rotate);
     }
     Ok(Iteration {
         values: work.state.diagonal,
@@ -160,15 +173,13 @@ impl Work {
     /// First row of the unreduced block that ends in `last`; deflates at the
     /// boundary it finds.
     fn block_start(&mut self, last: usize, recorder: &mut dyn Recorder) -> usize {
+        let mut next = self.state.diagonal[last].abs();
         for k in (0..last).rev() {
-            let size = self.state.off_diagonal[k].abs();
             if self.settled[k] == Settled::Yes {
                 return k + 1;
             }
-            let (d, next) = (
-                self.state.diagonal[k].abs(),
-                self.state.diagonal[k + 1].abs(),
-            );
+            let size = self.state.off_diagonal[k].abs();
+            let d = self.state.diagonal[k].abs();
             // The cheap test lets a little more through than the exact one below.
             let likely = size * size <= 2.0 * UNIT * UNIT * d * next;
             if size <= self.floor || likely {
@@ -185,6 +196,7 @@ impl Work {
                     return k + 1;
                 }
             }
+            next = d;
         }
         0
     }
@@ -216,7 +228,12 @@ impl Work {
         }
     }
 
-    fn sweep(&mut self, block: Block, recorder: &mut dyn Recorder) {
+    fn sweep(
+        &mut self,
+        block: Block,
+        recorder: &mut dyn Recorder,
+        rotate: &mut impl FnMut(usize, Rotation),
+    ) {
         let Block {
             first,
             last,
@@ -233,7 +250,7 @@ impl Work {
             shift,
             direction,
         };
-        sweep(&mut self.state, step, |_, _| {});
+        sweep(&mut self.state, step, rotate);
         self.sweeps.push(step);
         if self.tally.listening == Listening::Yes {
             let totals = self.tally.after(&self.state, first, last);

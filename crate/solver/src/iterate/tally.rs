@@ -1,6 +1,7 @@
 //! Balance and control totals of an iteration in progress.
 
 use crate::ledger::{Basis, Listening, Totals};
+use crate::matrix::lanes::Lanes;
 use crate::matrix::norms::{length, norm2};
 use crate::reduce::Tridiagonal;
 
@@ -43,10 +44,11 @@ impl Tally {
             let end = state.order().min(start + STRETCH);
             let diagonal = &state.diagonal[start..end];
             let off = &state.off_diagonal[start..end.min(state.off_diagonal.len())];
+            let (trace, squares) = sums(diagonal);
             self.stretches[stretch] = Sums {
-                trace: diagonal.iter().sum(),
-                diagonal: sum_of_squares(diagonal),
-                off: sum_of_squares(off),
+                trace,
+                diagonal: squares,
+                off: sums(off).1,
             };
         }
     }
@@ -61,21 +63,17 @@ impl Tally {
                 diagonal: sum.diagonal + part.diagonal,
                 off: sum.off + part.off,
             });
-        // Squares of very small off-diagonals vanish: only then take the scaled norm.
-        let off = if sums.off > SMALLEST_PLAIN {
-            sums.off.sqrt()
+        // Squares of very small entries vanish: only then take the scaled norms.
+        let (balance, frobenius) = if sums.off > SMALLEST_PLAIN && sums.diagonal > SMALLEST_PLAIN {
+            let off = 2.0 * sums.off;
+            (off.sqrt(), (sums.diagonal + off).sqrt())
         } else {
-            norm2(state.off_diagonal.iter())
-        };
-        let balance = off * std::f64::consts::SQRT_2;
-        let diagonal = if sums.diagonal > SMALLEST_PLAIN {
-            sums.diagonal.sqrt()
-        } else {
-            norm2(state.diagonal.iter())
+            let balance = norm2(state.off_diagonal.iter()) * std::f64::consts::SQRT_2;
+            (balance, length(norm2(state.diagonal.iter()), balance))
         };
         Totals {
             trace: sums.trace,
-            frobenius: length(diagonal, balance),
+            frobenius,
             balance,
             basis: Basis::Measured,
         }
@@ -85,16 +83,24 @@ impl Tally {
 /// Below this a sum of squares may have lost terms to underflow (2⁻⁹⁰⁰).
 const SMALLEST_PLAIN: f64 = crate::matrix::norms::power_of_two(-900);
 
-fn sum_of_squares(values: &[f64]) -> f64 {
-    let (fours, rest) = values.as_chunks::<4>();
-    let mut sums = [0.0; 4];
-    for four in fours {
-        for lane in 0..4 {
-            sums[lane] += four[lane] * four[lane];
-        }
+/// Σx and Σx², each in four interleaved sums added in a fixed order: one sum
+/// would wait for itself.
+fn sums(values: &[f64]) -> (f64, f64) {
+    let (pairs, rest) = values.as_chunks::<2>();
+    let (fours, pair) = pairs.as_chunks::<2>();
+    let zero = Lanes::splat(0.0);
+    let (mut even, mut odd) = ((zero, zero), (zero, zero));
+    let add = |sums: (Lanes, Lanes), x: Lanes| (sums.0 + x, sums.1 + x * x);
+    for [first, second] in fours {
+        even = add(even, Lanes::load(first));
+        odd = add(odd, Lanes::load(second));
     }
-    rest.iter()
-        .fold((sums[0] + sums[1]) + (sums[2] + sums[3]), |sum, x| {
-            sum + x * x
-        })
+    if let [pair] = pair {
+        even = add(even, Lanes::load(pair));
+    }
+    let last = rest.first().copied().unwrap_or(0.0);
+    (
+        (even.0 + odd.0).sum() + last,
+        (even.1 + odd.1).sum() + last * last,
+    )
 }

@@ -193,6 +193,25 @@ impl Ledger {
         }
     }
 
+    fn copy(&mut self, numbers: &[f64]) -> Span {
+        let start = self.pool.len();
+        self.pool.extend_from_slice(numbers);
+        Span {
+            start,
+            length: numbers.len(),
+        }
+    }
+
+    /// Room for a run of this order, so that nothing is moved while it goes on:
+    /// n²/2 numbers a plane for the reflectors, and n² for the sweeps, of which
+    /// there are about 2·n over blocks of n/2 rows.
+    fn begin(&mut self, run: &ReductionRun) {
+        let (order, planes) = (run.order(), run.planes());
+        self.order = order;
+        self.entries.reserve(4 * order);
+        self.pool.reserve((planes + 2) * order * (order + 1) / 2);
+    }
+
     fn checkpoint_reduction(&mut self, run: &ReductionRun) {
         self.reductions.push((self.entries.len(), run.checkpoint()));
     }
@@ -203,7 +222,7 @@ impl Ledger {
             start: self.off_diagonal_at[step.first],
             length: step.last - step.first,
         };
-        let after = self.keep(tridiagonal.off_diagonal[block.clone()].iter().copied());
+        let after = self.copy(&tridiagonal.off_diagonal[block.clone()]);
         for (at, place) in self.off_diagonal_at[block].iter_mut().enumerate() {
             *place = after.start + at;
         }
@@ -240,12 +259,12 @@ impl Recorder for Ledger {
         let act = match event {
             Event::Scaling { matrix, metric } => Act::Scaling { matrix, metric },
             Event::Start { run } => {
-                self.order = run.order();
+                self.begin(run);
                 self.checkpoint_reduction(run);
                 return;
             }
             Event::Metric { factor, run } => {
-                self.order = run.order();
+                self.begin(run);
                 let order = factor.rows();
                 let lower = move |plane: &nalgebra::DMatrix<f64>| -> Vec<f64> {
                     (0..order)
@@ -280,8 +299,8 @@ impl Recorder for Ledger {
                 image,
                 run,
             } => {
-                let vector_re = self.keep(vector_re.iter().copied());
-                let vector_im = self.keep(vector_im.iter().copied());
+                let vector_re = self.copy(vector_re);
+                let vector_im = self.copy(vector_im);
                 let order = self.order;
                 let zeroed_from = if scalar == 0.0 { order } else { column + 2 };
                 let act = Act::Reflector {
@@ -306,7 +325,7 @@ impl Recorder for Ledger {
             } => {
                 let re = self.keep(phases.iter().map(|phase| phase.0));
                 let im = self.keep(phases.iter().map(|phase| phase.1));
-                let off = self.keep(tridiagonal.off_diagonal.iter().copied());
+                let off = self.copy(&tridiagonal.off_diagonal);
                 self.off_diagonal_at = (off.start..off.start + off.length).collect();
                 self.entries.push(Entry {
                     act: Act::Phases { re, im },

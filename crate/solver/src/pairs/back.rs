@@ -1,6 +1,6 @@
 //! Back-transformation: vectors of T to vectors of the problem.
 //!
-//! Notation: X = Q D Z; reflectors in groups H₁…H_b = I − V F Vᴴ with F upper
+//! Notation: Y = Q D Z; reflectors in groups H₁…H_b = I − V F Vᴴ with F upper
 //! triangular (compact WY form: Schreiber and Van Loan, SIAM J. Sci. Stat.
 //! Comput. 10, 1989), so that nearly all work is in matrix products.
 
@@ -8,13 +8,13 @@ use crate::matrix::kernels::{
     accumulate_split, Operand, Orientation, Packing, Shape, SplitTarget, Update,
 };
 use crate::matrix::Dense;
-use crate::reduce::{solve_adjoint, Reduction, Reflectors};
+use crate::reduce::{Reduction, Reflectors};
 use nalgebra::DMatrix;
 
 /// Reflectors in a group.
 const GROUP: usize = 32;
 
-/// X from Z. Cost: 2·n³ operations real, 8·n³ complex, n³ or 4·n³ for a pair.
+/// Y from Z. Cost: 2·n³ operations real, 8·n³ complex.
 pub(super) fn transform(reduction: &Reduction, basis: DMatrix<f64>) -> Dense {
     let order = reduction.order();
     let mut vectors = with_phases(basis, &reduction.phases);
@@ -29,9 +29,6 @@ pub(super) fn transform(reduction: &Reduction, basis: DMatrix<f64>) -> Dense {
         {
             apply_group(reflectors, order, start, end, &mut vectors, &mut room);
         }
-    }
-    if let Some(factor) = &reduction.factor {
-        solve_adjoint(factor, &mut vectors);
     }
     vectors
 }

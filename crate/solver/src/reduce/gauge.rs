@@ -19,7 +19,7 @@ pub(super) struct Gauge {
 }
 
 const MEASURED_EVERY: usize = 16;
-const MEASURED_TAIL: usize = 24;
+const MEASURED_TAIL: usize = 16;
 
 impl Gauge {
     pub fn new(listening: Listening) -> Self {

@@ -120,7 +120,9 @@ pub fn reduce(
 ) -> Result<Reduction, ReduceError> {
     let order = check(rounded)?;
     let listening = recorder.listening();
-    record_scaling(rounded, recorder, listening);
+    if rounded.metric.is_some() && listening == Listening::Yes {
+        record_scaling(rounded, recorder, Totals::of_matrix(&rounded.matrix));
+    }
     let (mut run, factor) = match &rounded.metric {
         None => (ReductionRun::new(&rounded.matrix), None),
         Some(metric_matrix) => {
@@ -133,8 +135,10 @@ pub fn reduce(
     let mut gauge = Gauge::new(listening);
     if let Some(factor) = &factor {
         recorder.record(Event::Metric { factor, run: &run }, gauge.read(&run));
-    } else {
-        recorder.record(Event::Start { run: &run }, gauge.read(&run));
+    } else if listening == Listening::Yes {
+        let totals = gauge.read(&run);
+        record_scaling(rounded, recorder, totals);
+        recorder.record(Event::Start { run: &run }, totals);
     }
     for col in 0..order {
         if control.progress(Stage::Reduce, share_done(col, order)) == Flow::Cancel {
@@ -158,7 +162,7 @@ pub fn reduce(
     let finished = run.finish();
     let (tridiagonal, phases) = make_real(
         finished.diagonal,
-        &finished.off_re,
+        finished.off_re,
         &finished.off_im,
         rounded.matrix.is_complex() || factor.as_ref().is_some_and(Dense::is_complex),
     );
@@ -227,24 +231,20 @@ fn check(rounded: &Rounded) -> Result<usize, ReduceError> {
     Ok(order)
 }
 
-fn record_scaling(rounded: &Rounded, recorder: &mut dyn Recorder, listening: Listening) {
-    if listening == Listening::Yes {
-        let metric = rounded.metric.as_ref().map(|_| rounded.metric_scale);
-        recorder.record(
-            Event::Scaling {
-                matrix: rounded.matrix_scale,
-                metric,
-            },
-            Totals::of_matrix(&rounded.matrix),
-        );
-    }
+fn record_scaling(rounded: &Rounded, recorder: &mut dyn Recorder, totals: Totals) {
+    let metric = rounded.metric.as_ref().map(|_| rounded.metric_scale);
+    let event = Event::Scaling {
+        matrix: rounded.matrix_scale,
+        metric,
+    };
+    recorder.record(event, totals);
 }
 
 /// T and D from complex off-diagonals: T's are their moduli, D's entries the
 /// running products of their unit phases. Real off-diagonals stay as they are.
 fn make_real(
     diagonal: Vec<f64>,
-    off_re: &[f64],
+    off_re: Vec<f64>,
     off_im: &[f64],
     complex: bool,
 ) -> (Tridiagonal, Vec<(f64, f64)>) {
@@ -252,7 +252,7 @@ fn make_real(
         return (
             Tridiagonal {
                 diagonal,
-                off_diagonal: off_re.to_vec(),
+                off_diagonal: off_re,
             },
             Vec::new(),
         );

@@ -92,6 +92,15 @@ impl ReductionRun {
         !self.im.is_empty()
     }
 
+    /// Planes of numbers: 1 real, 2 complex.
+    pub(crate) fn planes(&self) -> usize {
+        if self.is_complex() {
+            2
+        } else {
+            1
+        }
+    }
+
     /// Number of rows.
     pub fn order(&self) -> usize {
         self.order
@@ -295,13 +304,34 @@ impl ReductionRun {
     /// band, as they stand. Cost: O(n).
     pub(crate) fn band(&self) -> (f64, f64) {
         let (mut trace, mut squares) = (self.settled_trace, self.settled_squares);
-        for col in self.done..self.order {
-            let diagonal = self.trailing(col, col).0;
-            trace += diagonal;
-            squares += diagonal * diagonal;
-            if col + 1 < self.order {
-                let (re, im) = self.trailing(col + 1, col);
-                squares += 2.0 * (re * re + im * im);
+        let plane = &self.re[..];
+        match &self.pending {
+            Some((v, w)) if self.im.is_empty() => {
+                let (v, w) = (&v.re[..self.stride], &w.re[..self.stride]);
+                for col in self.done..self.order {
+                    let at = col * self.stride + col;
+                    let diagonal = updated(plane[at], v[col], w[col], v[col], w[col]);
+                    // With an odd order the last row has a neighbour too: zero.
+                    let below = if col + 1 < self.stride {
+                        updated(plane[at + 1], v[col + 1], w[col + 1], v[col], w[col])
+                    } else {
+                        0.0
+                    };
+                    trace += diagonal;
+                    squares += diagonal * diagonal + 2.0 * (below * below);
+                }
+            }
+            _ => {
+                for col in self.done..self.order {
+                    let diagonal = self.trailing(col, col).0;
+                    let (re, im) = if col + 1 < self.order {
+                        self.trailing(col + 1, col)
+                    } else {
+                        (0.0, 0.0)
+                    };
+                    trace += diagonal;
+                    squares += diagonal * diagonal + 2.0 * (re * re + im * im);
+                }
             }
         }
         let norm = if squares > SMALLEST_PLAIN {
