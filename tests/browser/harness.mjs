@@ -135,3 +135,30 @@ export async function assertValues(page, expected) {
   }
   assert.ok(agree(printed), `expected ${expected.join(', ')}, the page prints ${printed.join(', ')}`);
 }
+
+/** Drops files on an element as a person would with the mouse; contents are buffers or text. */
+export async function dropFiles(page, target, files) {
+  const packed = files.map(({ name, content }) => ({ name, base64: Buffer.from(content).toString('base64') }));
+  await page.locator(target).evaluate((element, list) => {
+    const dataTransfer = new DataTransfer();
+    for (const { name, base64 } of list) {
+      const bytes = Uint8Array.from(atob(base64), (letter) => letter.charCodeAt(0));
+      dataTransfer.items.add(new File([bytes], name));
+    }
+    for (const type of ['dragover', 'drop']) {
+      element.dispatchEvent(new DragEvent(type, { dataTransfer, bubbles: true, cancelable: true }));
+    }
+  }, packed);
+}
+
+/** A .npy file (NumPy Enhancement Proposal 1, version 1.0) of doubles, row by row. */
+export function npyFile(shape, values) {
+  const sizes = shape.map((size) => `${String(size)},`).join(' ');
+  const header = `{'descr': '<f8', 'fortran_order': False, 'shape': (${sizes}), }\n`;
+  const bytes = Buffer.alloc(10 + header.length + 8 * values.length);
+  bytes.write('\x93NUMPY\x01\x00', 'latin1');
+  bytes.writeUInt16LE(header.length, 8);
+  bytes.write(header, 10, 'latin1');
+  values.forEach((value, place) => bytes.writeDoubleLE(value, 10 + header.length + 8 * place));
+  return bytes;
+}

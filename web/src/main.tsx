@@ -2,7 +2,12 @@
 import './view/style/base.css';
 import './view/style/sheet.css';
 import './view/style/problem.css';
-import './view/style/results.css';
+import './view/style/figures.css';
+import './view/style/working.css';
+import './view/style/spectrum.css';
+import './view/style/eigenpairs.css';
+import './view/style/proof.css';
+import './view/style/claims.css';
 import './view/style/print.css';
 
 import { render } from 'preact';

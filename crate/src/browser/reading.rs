@@ -292,3 +292,19 @@ pub enum Opened {
         reason: String,
     },
 }
+
+/// What output files make of a claim.
+#[derive(Clone, Debug, Serialize, Deserialize, Tsify)]
+#[serde(tag = "outcome", rename_all = "lowercase")]
+pub enum ClaimedFiles {
+    /// The text of the claim.
+    Claim {
+        /// It.
+        text: String,
+    },
+    /// Nothing can be claimed of them.
+    Refused {
+        /// Why, as a sentence.
+        reason: String,
+    },
+}

@@ -1,17 +1,20 @@
 //! From solving on: every method here makes plain data of what a
 //! [`Run`] holds. Where there is no run, the answer is `undefined`.
 
-use js_sys::Function;
+use js_sys::{Function, Uint8Array};
 use tsify::{Ts, Tsify};
 use wasm_bindgen::prelude::*;
 
+use super::document::ProblemDocument;
 use super::read::Ready;
+use super::reading::ClaimedFiles;
 use super::Workbench;
+use crate::claim::files::{claim_of, OutputFile};
 use crate::claim::Judgement;
 use crate::control::{Control, Flow, Stage};
 use crate::exact;
 use crate::ledger::Ledger;
-use crate::prove::{self, Level};
+use crate::prove::Level;
 use crate::report::claims;
 use crate::report::exact_view::{self, ExactAnswer};
 use crate::report::export::{self, ExportKind, FileText};
@@ -20,6 +23,7 @@ use crate::report::run::{Heading, Run};
 use crate::report::sheet;
 use crate::report::solution::{self, Solution};
 use crate::report::spectrum::{self, SpectrumView, Window, WindowMove};
+use crate::report::tolerances::{self, TolerancesView};
 use crate::report::values::{self, Checks, Settled, ValueTable};
 use crate::report::vector::VectorView;
 use crate::report::working::{self, EntryView, HistoryView, LedgerPage};
@@ -112,7 +116,11 @@ impl Workbench {
         let problem = ready.assembly.problem.clone();
         let rounded = problem.rounded();
         let outcome = crate::solve::solve(&rounded, &mut ledger, &mut Reporter::new(report));
-        let run = Run::new(heading(ready), problem, rounded, ledger, outcome);
+        let assembly = &ready.assembly;
+        let run = Run::new(heading(ready), problem, rounded, ledger, outcome).with_tolerances(
+            assembly.tolerances.clone(),
+            assembly.metric_tolerances.clone(),
+        );
         let view = solution::view(&run);
         self.run = Some(run);
         Ok(Ts::from_rust(&view)?)
@@ -197,18 +205,18 @@ impl Workbench {
         let Some(run) = &mut self.run else {
             return Ok(None);
         };
-        if let Ok(solution) = &run.outcome {
-            let proof = prove::prove(
-                &run.problem,
-                &solution.approximation,
-                level,
-                &mut Reporter::new(report),
-            );
-            if run.proven().is_none() || proof.level().is_some() {
-                run.proof = Some(proof);
-            }
-        }
+        run.prove(level, &mut Reporter::new(report));
         answer(proof_view::view(run))
+    }
+
+    /// What the tolerances of the entries do to the eigenvalues, with the
+    /// ranking of entries for the one at `index` (from 0).
+    pub fn tolerances(&self, index: u32) -> Answer<TolerancesView> {
+        answer(
+            self.run
+                .as_ref()
+                .and_then(|run| tolerances::view(run, index as usize)),
+        )
     }
 
     /// Takes the exact road, beyond the default order where that is asked for.
@@ -253,6 +261,46 @@ impl Workbench {
                 .as_ref()
                 .map(|run| claims::judge(run, &texts, &mut reporter)),
         )
+    }
+
+    /// The claim that an outside solver's output files make about the problem
+    /// last solved; `names` and `contents` belong together.
+    ///
+    /// # Errors
+    /// Only if the answer cannot be handed over.
+    pub fn claim_of_files(
+        &self,
+        names: Vec<String>,
+        contents: Vec<Uint8Array>,
+    ) -> Answer<ClaimedFiles> {
+        let Some(run) = &self.run else {
+            return Ok(None);
+        };
+        let bytes: Vec<Vec<u8>> = contents.iter().map(Uint8Array::to_vec).collect();
+        let files: Vec<OutputFile<'_>> = names
+            .iter()
+            .zip(&bytes)
+            .map(|(name, bytes)| OutputFile { name, bytes })
+            .collect();
+        answer(Some(match claim_of(&files, run.order()) {
+            Ok(text) => ClaimedFiles::Claim { text },
+            Err(reason) => ClaimedFiles::Refused { reason },
+        }))
+    }
+
+    /// Takes title, notes and claims of the document for the files and the
+    /// sheet of the run; they change no figure, so nothing is solved again.
+    ///
+    /// # Errors
+    /// If the document is not of the expected form.
+    pub fn take_heading(&mut self, document: Ts<ProblemDocument>) -> Result<(), JsError> {
+        let document = document.to_rust()?;
+        if let Some(run) = &mut self.run {
+            run.heading.title = document.title;
+            run.heading.notes = document.notes;
+            run.heading.claims = document.claims;
+        }
+        Ok(())
     }
 
     /// A data file.

@@ -2,8 +2,10 @@
 //!
 //! Rows end at line breaks, semicolons, `],` or `\\`; cells are apart by
 //! commas, tabs, bars or ampersands where there are any, else by blanks. Other
-//! forms (LaTeX, HTML, Matrix Market, …) go through the entry stage.
+//! forms (LaTeX, HTML, Matrix Market, …) go through the entry stage. A comma
+//! between two digits may be a decimal mark: see [`commas`](super::commas).
 
+use super::commas::{self, Commas, Wanted as Form};
 use super::figure::{of_cell, raw, Raw};
 use crate::entry::{self, Input, Origin, ReadOptions, Wanted};
 
@@ -20,8 +22,11 @@ pub(super) struct Row {
     pub(super) cells: Vec<Cell>,
 }
 
-/// A cell that is not a figure.
+/// Why there are no rows of figures.
 pub(super) enum BodyError {
+    /// This may be one figure with a decimal comma or two figures.
+    Comma { text: String },
+    /// A cell that is not a figure.
     Figure {
         line: usize,
         place: usize,
@@ -32,8 +37,51 @@ pub(super) enum BodyError {
 /// Reads the rows of `text`; `first_line` is the line its first one stands on.
 /// What is not plain rows is left to the entry stage, which knows every other
 /// form a matrix comes in.
-pub(super) fn rows(text: &str, first_line: usize) -> Result<Vec<Row>, BodyError> {
+pub(super) fn rows(
+    text: &str,
+    first_line: usize,
+    wanted: Form,
+    marks: Commas,
+) -> Result<Vec<Row>, BodyError> {
+    let decimal = match marks {
+        Commas::Decimal => true,
+        Commas::Separating => false,
+        Commas::ByEvidence => {
+            commas::are_decimal(text, wanted).map_err(|text| BodyError::Comma { text })?
+        }
+    };
+    if decimal {
+        return comma_rows(text, first_line);
+    }
     plain_rows(text, first_line).or_else(|error| entry_rows(text).ok_or(error))
+}
+
+/// Rows at line breaks, cells apart by semicolons, tabs and blanks; commas are
+/// decimal marks.
+fn comma_rows(text: &str, first_line: usize) -> Result<Vec<Row>, BodyError> {
+    let mut rows = Vec::new();
+    for (offset, line) in text.lines().enumerate() {
+        let texts: Vec<String> = line.split([';', '\t']).flat_map(words).collect();
+        let mut cells = Vec::with_capacity(texts.len());
+        for (place, text) in texts.iter().enumerate() {
+            let (number, many) = multiplicity(text);
+            let Some(raw) = raw(&number.replace(',', ".")) else {
+                return Err(BodyError::Figure {
+                    line: first_line + offset,
+                    place: place + 1,
+                    text: text.clone(),
+                });
+            };
+            cells.push(Cell {
+                raw: raw.typed_as(number),
+                many,
+            });
+        }
+        if !cells.is_empty() {
+            rows.push(Row { cells });
+        }
+    }
+    Ok(rows)
 }
 
 /// The rows the entry stage reads, each given cell as it is written.

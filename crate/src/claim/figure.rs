@@ -99,6 +99,14 @@ pub(super) struct Raw {
     im: Part,
 }
 
+impl Raw {
+    /// The same, told as it was typed.
+    pub(super) fn typed_as(mut self, text: &str) -> Self {
+        text.trim().clone_into(&mut self.text);
+        self
+    }
+}
+
 /// Reads one figure: a number with its printed digits, else any cell of the
 /// entry stage's grammar, which is meant exactly (`(3 + √5)/2`). `None` when it
 /// is neither.
@@ -166,8 +174,7 @@ fn printed(text: &str) -> Option<Raw> {
         Some((number, within)) => (number.trim(), Some(unsigned(within.trim())?.value)),
         None => (plain.trim(), None),
     };
-    let compact: String = number.chars().filter(|c| !c.is_whitespace()).collect();
-    let (mut re, mut im) = complex(&compact)?;
+    let (mut re, mut im) = complex(&without_blanks(number)?)?;
     if within.is_some() {
         re.within.clone_from(&within);
         if !im.value.is_zero() {
@@ -179,6 +186,20 @@ fn printed(text: &str) -> Option<Raw> {
         re,
         im,
     })
+}
+
+/// The number without its blanks; `None` where one stands between two digits,
+/// since `381 3` is two numbers.
+fn without_blanks(number: &str) -> Option<String> {
+    let mut compact = String::with_capacity(number.len());
+    for word in number.split_whitespace() {
+        let joins = |c: Option<char>| c.is_some_and(|c| c.is_ascii_alphanumeric() || c == '.');
+        if joins(compact.chars().next_back()) && joins(word.chars().next()) {
+            return None;
+        }
+        compact.push_str(word);
+    }
+    Some(compact)
 }
 
 /// Gives the figures of one claim their intervals.

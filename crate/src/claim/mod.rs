@@ -16,12 +16,14 @@
 mod basis;
 mod body;
 mod causes;
+mod commas;
 mod compare;
 mod eigenvectors;
 pub mod evidence;
 mod exactly;
 mod factors;
 pub mod figure;
+pub mod files;
 mod forms;
 mod gram;
 mod interval;

@@ -14,7 +14,7 @@ use super::figure::{size, Figure};
 use super::interval::{ends, zero, Complex, Precision, Real};
 use super::print;
 use super::statement::Table;
-use super::verdict::{Finding, FindingKind, Freedom, Item, Verdict, Word};
+use super::verdict::{Drawn, Finding, FindingKind, Freedom, Item, Verdict, Word};
 use crate::problem::Problem;
 use crate::report::decimal::{leading_place, significant, Rounding};
 
@@ -111,7 +111,7 @@ fn digits_right(
         };
         verdict.items.push(Item {
             label: print::lambda(index),
-            claimed: figure.text.clone(),
+            claimed: shown(figure),
             truth: evidence.told(place),
             word: Word::Confirmed,
             off_by: Some(match right {
@@ -119,10 +119,25 @@ fn digits_right(
                 None if off.is_zero() => "exact".to_owned(),
                 None => format!("off by at most {}", significant(&off, 2, Rounding::Up)),
             }),
-            drawn: None,
+            drawn: Some(Drawn {
+                claimed_low: Some(figure.re.low.to_f64().value()),
+                claimed_high: Some(figure.re.high.to_f64().value()),
+                proven_low: value.lower.to_f64().value(),
+                proven_high: value.upper.to_f64().value(),
+            }),
         });
     }
     fewest
+}
+
+/// The figure as typed; the hexadecimal notation of a binary file in decimals
+/// that a double reads back.
+fn shown(figure: &Figure) -> String {
+    if figure.text.contains("0x") {
+        significant(&figure.re.stated, 17, Rounding::Nearest)
+    } else {
+        figure.text.clone()
+    }
 }
 
 /// Largest d ≥ 0 with off ≤ 10^−d·truth; `None` for an exact figure and for a

@@ -30,13 +30,14 @@
 //! | `output` | an outside solver's values, then its vectors as columns |
 //!
 //! Options: `truncated` (the last digit is cut off, not rounded), `exact`,
-//! `4 figures`, `± 0.01`.
+//! `4 figures`, `± 0.01`, `decimal commas`, `decimal points`.
 //!
 //! Several claims may follow one another in one text: a worked calculation.
 
 use dashu_ratio::RBig;
 
 use super::body::{self, BodyError};
+use super::commas::{Commas, Wanted};
 use super::figure::{raw, spanned, Digits, Figure};
 use super::statement::{
     Claim, ClaimError, Extent, Kind, Length, Quantity, Reflector, Scalar, Table, Values,
@@ -60,14 +61,19 @@ pub fn read(text: &str) -> Result<Claim, ClaimError> {
         .collect();
     let mut digits = Digits::Rounded;
     let mut length = Length::Any;
+    let mut commas = Commas::default();
     for option in parts {
         match option.to_lowercase().as_str() {
             "orthonormal" | "unit" => length = Length::Unit,
+            "decimal commas" | "decimal comma" => commas = Commas::Decimal,
+            "decimal points" | "decimal point" => commas = Commas::Separating,
             other => digits = digits_option(other)?,
         }
     }
     let first_line = text.split(':').next().unwrap_or("").lines().count().max(1);
-    let rows = body::rows(rest, first_line).map_err(|error| match error {
+    let wanted = wanted(&words);
+    let rows = body::rows(rest, first_line, wanted, commas).map_err(|error| match error {
+        BodyError::Comma { text } => ClaimError::Comma { text },
         BodyError::Figure { line, place, text } => ClaimError::Figure { line, place, text },
     })?;
     let head = Head {
@@ -86,6 +92,17 @@ pub fn read(text: &str) -> Result<Claim, ClaimError> {
         kind,
         digits,
     })
+}
+
+/// What the words of a head want behind them.
+fn wanted(words: &[String]) -> Wanted {
+    match words.first().map_or("", String::as_str) {
+        "eigenvalue" | "frequency" | "determinant" | "trace" | "positive" | "negative" | "zero"
+        | "condition" | "radius" => Wanted::One,
+        "angular" if words.get(1).is_some_and(|word| word == "frequency") => Wanted::One,
+        "eigenvalues" | "some" | "frequencies" | "angular" | "vector" | "polynomial" => Wanted::Run,
+        _ => Wanted::Rows,
+    }
 }
 
 /// Cuts a worked calculation into its claims: each begins at a line whose

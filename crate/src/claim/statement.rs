@@ -195,6 +195,11 @@ pub enum ClaimError {
         /// The text.
         text: String,
     },
+    /// A comma that may be a decimal mark or stand between two figures.
+    Comma {
+        /// The text with the comma in it.
+        text: String,
+    },
     /// The figures do not have the shape this kind needs.
     Shape {
         /// The head as typed.
@@ -216,13 +221,19 @@ impl fmt::Display for ClaimError {
             ),
             Self::UnknownOption { option } => write!(
                 f,
-                "“{option}” is no option; use truncated, exact, a number of figures such as \
-                 “4 figures”, or a tolerance such as “± 0.01”"
+                "“{option}” is no option; use truncated, exact, decimal commas, a number of figures \
+                 such as “4 figures”, or a tolerance such as “± 0.01”"
             ),
             Self::NoFigures { head } => write!(f, "nothing is stated after “{head}”"),
             Self::Figure { line, place, text } => {
                 write!(f, "“{text}” (line {line}, figure {place}) is not a number")
             }
+            Self::Comma { text } => write!(
+                f,
+                "“{text}” may be one figure with a decimal comma or two figures; write “decimal \
+                 commas” behind the head and a comma (“eigenvalues, decimal commas: …”), or a \
+                 blank after a comma that separates"
+            ),
             Self::Shape { head, needed } => write!(f, "“{head}” needs {needed}"),
         }
     }

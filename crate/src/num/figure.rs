@@ -81,21 +81,25 @@ pub fn proven_digits(lower: &Dyadic, upper: &Dyadic) -> Option<i64> {
     if lower.signum() * upper.signum() <= 0 {
         return (lower == upper).then_some(i64::MAX);
     }
-    let width = upper - lower;
+    digits_against(&(upper - lower), &lower.abs().min(upper.abs()))
+}
+
+/// The largest N with width ≤ 10^−N · size; `None` if the size is zero and the
+/// width is not, `i64::MAX` if the width is zero.
+pub fn digits_against(width: &Dyadic, size: &Dyadic) -> Option<i64> {
     if width.is_zero() {
         return Some(i64::MAX);
     }
-    let size = lower.abs().min(upper.abs());
-    let mut digits = decimal_exponent(&size)? - decimal_exponent(&width)? + 1;
+    let mut digits = decimal_exponent(size)? - decimal_exponent(width)? + 1;
     let fits = |digits: i64| {
         let power = Dyadic::new(
             IBig::from(UBig::from(10u8).pow(digits.unsigned_abs() as usize)),
             0,
         );
         if digits >= 0 {
-            &width * &power <= size
+            &(width * &power) <= size
         } else {
-            width <= &size * &power
+            width <= &(size * &power)
         }
     };
     while !fits(digits) {

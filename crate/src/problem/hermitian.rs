@@ -2,7 +2,7 @@
 
 use super::{Cells, Part};
 use crate::entry::cell::CellValue;
-use crate::num::ExactReal;
+use crate::num::{figure, ExactReal};
 
 /// Disagreeing pairs that are listed; all are counted.
 pub const LISTED: usize = 100;
@@ -121,8 +121,9 @@ impl std::fmt::Display for Adjustment {
         };
         write!(
             f,
-            "{} {pairs} of the {name} disagreed, by {:.3e} at most; {taken}.",
-            self.found.count, self.found.largest
+            "{} {pairs} of the {name} disagreed, by {} at most; {taken}.",
+            self.found.count,
+            figure::plain(self.found.largest, 3)
         )
     }
 }
@@ -205,12 +206,14 @@ pub(super) fn asymmetry(cells: &Cells, part: Part) -> Option<Asymmetry> {
     })
 }
 
+/// A difference in three significant digits.
 fn short(re: f64, im: f64) -> String {
+    let real = figure::plain(re, 3);
     if im == 0.0 {
-        format!("{re:.2e}")
-    } else {
-        format!("{re:.2e}{im:+.2e}i")
+        return real;
     }
+    let sign = if im < 0.0 { '-' } else { '+' };
+    format!("{real} {sign} {}i", figure::plain(im.abs(), 3))
 }
 
 /// Makes the cells Hermitian by the choice given. The diagonal keeps its real

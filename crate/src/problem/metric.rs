@@ -14,6 +14,7 @@
 use crate::exact::Gauss;
 use crate::matrix::{Dense, ExactMatrix};
 use crate::num::exact::DyadicInterval;
+use crate::num::figure;
 use crate::reduce::cholesky;
 use dashu_base::{BitTest, Gcd, UnsignedAbs};
 use dashu_int::{IBig, UBig};
@@ -21,6 +22,9 @@ use dashu_ratio::RBig;
 
 /// Orders up to which a rational metric is decided exactly.
 const EXACT_ORDER: usize = 16;
+
+/// Significant digits of a pivot in a sentence.
+const PIVOT_DIGITS: usize = 7;
 
 /// Bits carried while a witness is evaluated.
 const WITNESS_BITS: usize = 256;
@@ -49,15 +53,15 @@ pub enum Certainty {
 impl std::fmt::Display for MetricFault {
     fn fmt(&self, f: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
         let k = self.block;
+        let pivot = figure::plain(self.pivot, PIVOT_DIGITS);
         let what = if k == 1 {
-            format!("its first diagonal entry is {:.6e}", self.pivot)
+            format!("its first diagonal entry is {pivot}")
         } else {
             format!(
                 "its leading {k} × {k} block is not, while the {} × {} block is: the pivot of \
-                 row {k} is {:.6e}",
+                 row {k} is {pivot}",
                 k - 1,
                 k - 1,
-                self.pivot
             )
         };
         match self.certainty {

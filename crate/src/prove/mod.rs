@@ -308,25 +308,57 @@ fn cancelled() -> Condition {
     )
 }
 
+/// Whether the digits asked for were reached. Where zero is inside an
+/// enclosure, its width counts against the largest eigenvalue.
 fn digits_reached(proof: &Proof, digits: u32) -> Condition {
+    let asked = i64::from(digits);
     let short = proof
         .enclosures()
         .iter()
-        .filter(|enclosure| {
-            enclosure
-                .digits()
-                .is_none_or(|proven| proven < i64::from(digits))
-        })
+        .filter(|enclosure| enclosure.digits().is_some_and(|proven| proven < asked))
         .count();
-    let (verdict, sentence) = match (proof.enclosures().is_empty(), short) {
-        (true, _) => (Verdict::Undecided, "No eigenvalue is enclosed.".to_string()),
-        (false, 0) => (Verdict::Proved, format!("Every eigenvalue has {digits} proven significant digits.")),
-        (false, short) => (
+    let order = proof.order();
+    let (verdict, sentence) = match (proof.enclosures().is_empty(), short, proof.held_at_zero()) {
+        (true, ..) => (
             Verdict::Undecided,
-            format!("{short} of {} eigenvalues have fewer than {digits} proven significant digits; zero may be among them.", proof.order()),
+            "No eigenvalue is enclosed.".to_string(),
         ),
+        (false, 0, None) => (
+            Verdict::Proved,
+            format!("Every eigenvalue has {digits} proven significant digits."),
+        ),
+        (false, 0, Some((count, Some(least)))) if least >= asked => (
+            Verdict::Proved,
+            format!(
+                "Every eigenvalue has {digits} proven significant digits, but for {count} with zero \
+                 inside the enclosure, whose width is at most 1e-{digits} of the largest eigenvalue."
+            ),
+        ),
+        (false, short, at_zero) => {
+            let zeros = match at_zero {
+                None => String::new(),
+                Some((1, _)) => " one enclosure holds zero".to_string(),
+                Some((count, _)) => format!(" {count} enclosures hold zero"),
+            };
+            let few = match short {
+                0 => String::new(),
+                short => format!(
+                    " {short} of {order} eigenvalues have fewer than {digits} proven significant digits"
+                ),
+            };
+            let and = if few.is_empty() || zeros.is_empty() { "" } else { ";" };
+            let said = format!("{few}{and}{zeros}.");
+            (Verdict::Undecided, capitalised(said.trim_start()))
+        }
     };
     Condition::new(ConditionKind::Digits, verdict, None, sentence)
+}
+
+fn capitalised(sentence: &str) -> String {
+    let mut letters = sentence.chars();
+    letters.next().map_or(String::new(), |first| {
+        first.to_uppercase().chain(letters).collect()
+    })
 }
 
 impl Residual {

@@ -274,6 +274,35 @@ impl Proof {
             .flatten()
     }
 
+    /// No eigenvalue of largest modulus is smaller than this: the largest of all
+    /// proven lower bounds on a modulus.
+    fn largest_at_least(&self) -> Dyadic {
+        self.enclosures
+            .iter()
+            .filter(|enclosure| enclosure.lower().signum() * enclosure.upper().signum() > 0)
+            .map(|enclosure| enclosure.lower().abs().min(enclosure.upper().abs()))
+            .fold(Dyadic::ZERO, Dyadic::max)
+    }
+
+    /// For the eigenvalues whose enclosure holds zero, which has no significant
+    /// digits: how many there are, and the largest N with every width at most
+    /// 10^−N of the largest eigenvalue (no N when none is proven to differ from
+    /// zero). `None` when zero is in no enclosure; an exact zero is not counted.
+    pub fn held_at_zero(&self) -> Option<(usize, Option<i64>)> {
+        let size = self.largest_at_least();
+        let against = |enclosure: &Enclosure| {
+            figure::digits_against(&(enclosure.upper() - enclosure.lower()), &size)
+        };
+        let at_zero: Vec<Option<i64>> = self
+            .enclosures
+            .iter()
+            .filter(|enclosure| enclosure.digits().is_none())
+            .map(against)
+            .collect();
+        let least = at_zero.iter().copied().reduce(Option::min)?;
+        Some((at_zero.len(), least))
+    }
+
     /// What this proof does not say, one sentence each.
     pub fn not_proved(&self) -> Vec<String> {
         let mut sentences = vec![

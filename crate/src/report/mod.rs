@@ -15,6 +15,7 @@ pub mod run;
 pub mod sheet;
 pub mod solution;
 pub mod spectrum;
+pub mod tolerances;
 pub mod values;
 pub mod vector;
 pub mod working;

@@ -104,10 +104,29 @@ fn words(proof: &Proof) -> String {
         },
         _ => String::new(),
     };
+    let known = format!("{known}{}", at_zero(proof));
     format!(
         "{level} {apart} of {} eigenvalues stand apart from all others.{known}",
         proof.order()
     )
+}
+
+/// What is said of enclosures that hold zero, which has no significant digits.
+fn at_zero(proof: &Proof) -> String {
+    let Some((count, least)) = proof.held_at_zero() else {
+        return String::new();
+    };
+    let (which, whose) = if count == 1 {
+        ("One enclosure holds zero".to_owned(), "its width is")
+    } else {
+        (format!("{count} enclosures hold zero"), "their widths are")
+    };
+    match least {
+        Some(least) if least > 0 => typeset_sentence(&format!(
+            " {which}; {whose} at most 1e-{least} of the largest eigenvalue."
+        )),
+        _ => format!(" {which}."),
+    }
 }
 
 fn condition(condition: &Condition) -> ConditionView {

@@ -5,13 +5,14 @@ use dashu_ratio::RBig;
 
 use super::decimal::{self, Rounding};
 use super::spectrum::Line;
+use crate::control::Control;
 use crate::exact::ExactSpectrum;
 use crate::fingerprint::Taking;
 use crate::ledger::Ledger;
 use crate::num::figure;
 use crate::num::ExactReal;
-use crate::problem::{Problem, Rounded};
-use crate::prove::Proof;
+use crate::problem::{Problem, Rounded, Tolerances};
+use crate::prove::{self, Level, Proof, Range};
 use crate::residuals::{residuals, Residuals};
 use crate::solve::{Solution, SolveError};
 
@@ -55,6 +56,12 @@ pub struct Run {
     pub proof: Option<Proof>,
     /// What the exact road found.
     pub exact: Option<ExactSpectrum>,
+    /// Tolerances of the matrix, if any were written.
+    pub tolerances: Option<Tolerances>,
+    /// Tolerances of the metric, if any were written.
+    pub metric_tolerances: Option<Tolerances>,
+    /// Proven ranges of the eigenvalues over all problems within them.
+    pub ranges: Option<Vec<Range>>,
 }
 
 /// Digits of a figure nothing is proven of, unless fewer are asked for.
@@ -84,6 +91,47 @@ impl Run {
             residuals,
             proof: None,
             exact: None,
+            tolerances: None,
+            metric_tolerances: None,
+            ranges: None,
+        }
+    }
+
+    /// The same run with the tolerances that were written beside the entries.
+    pub fn with_tolerances(
+        mut self,
+        matrix: Option<Tolerances>,
+        metric: Option<Tolerances>,
+    ) -> Self {
+        self.tolerances = matrix;
+        self.metric_tolerances = metric;
+        self
+    }
+
+    /// Whether any entry has a tolerance.
+    pub fn has_tolerances(&self) -> bool {
+        self.tolerances.is_some() || self.metric_tolerances.is_some()
+    }
+
+    /// Proves the result at `level`, and once the ranges over the tolerances. A
+    /// proof that comes to nothing does not replace one that did.
+    pub fn prove(&mut self, level: Level, control: &mut dyn Control) {
+        let Ok(solution) = &self.outcome else {
+            return;
+        };
+        let approximation = &solution.approximation;
+        let proof = prove::prove(&self.problem, approximation, level, control);
+        if self.ranges.is_none() && self.has_tolerances() {
+            self.ranges = prove::tolerance_ranges(
+                &self.problem,
+                approximation,
+                self.tolerances.as_ref(),
+                self.metric_tolerances.as_ref(),
+                control,
+            );
+        }
+        if self.proven().is_none() || proof.level().is_some() {
+            self.proof = Some(proof);
         }
     }
 
@@ -150,6 +198,7 @@ impl Run {
                         )),
                         approx: value,
                         enclosure: None,
+                        range: None,
                     }
                 })
                 .collect();
@@ -166,10 +215,18 @@ impl Run {
                     last: cluster.last() as u32 + 1,
                     approx: (&lower + &upper) / RBig::from(2),
                     enclosure: Some((lower, upper)),
+                    range: self.range(cluster.first(), cluster.last()),
                     figure: decimal::typeset(&figure),
                 }
             })
             .collect()
+    }
+
+    /// From the lowest to the highest end of the ranges of these eigenvalues.
+    fn range(&self, first: usize, last: usize) -> Option<(RBig, RBig)> {
+        let ranges = self.ranges.as_ref()?;
+        let (low, high) = (ranges.get(first)?.lower(), ranges.get(last)?.upper());
+        Some((low.to_rational(), high.to_rational()))
     }
 
     /// Bound on the residual norm of the eigenvalue at `index` (from 0), scaled.

@@ -4,15 +4,15 @@
 //! So the window is kept in integers here, and the page is handed positions
 //! from −1 (left edge) to 1 (right edge) together with the marks of the axis
 //! as text.
-//!
-//! Notation: c·2^u the centre, h·2^u the half width, 2²⁰ ≤ h < 2²¹.
 
-use dashu_base::{Abs, BitTest};
-use dashu_int::{IBig, UBig};
+mod axis;
+mod window;
+
 use dashu_ratio::RBig;
 use serde::{Deserialize, Serialize};
 
-use super::decimal::{self, Rounding};
+use axis::Axis;
+pub use window::Window;
 
 /// What stands on the line: one eigenvalue, or several that are not proven
 /// apart.
@@ -26,22 +26,11 @@ pub struct Line {
     pub approx: RBig,
     /// Proven lower and upper ends, where there is a proof.
     pub enclosure: Option<(RBig, RBig)>,
+    /// Proven ends over all problems within the tolerances, where there are any.
+    pub range: Option<(RBig, RBig)>,
     /// The figure as printed elsewhere on the page.
     pub figure: String,
 }
-
-/// A part of the real line. Opaque to the page, which hands it back as it is.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub struct Window {
-    centre: IBig,
-    half: u32,
-    unit: i32,
-}
-
-const HALF_BITS: u32 = 20;
-/// A deep proof's enclosure of 500 digits is about 2^−1700 wide; the ends of
-/// the doubles' range, scaled, need some 2,100. Beyond this there is nothing.
-const UNIT_RANGE: std::ops::RangeInclusive<i32> = -6000..=4200;
 
 /// How the page asks for another window.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
@@ -50,10 +39,17 @@ const UNIT_RANGE: std::ops::RangeInclusive<i32> = -6000..=4200;
 pub enum WindowMove {
     /// The whole spectrum.
     All,
+    /// The whole spectrum with its ranges over the tolerances.
+    Ranges,
     /// So close to one line of the spectrum that its enclosure has a width.
     Lens {
         /// Place in the list of lines, from 0.
         line: u32,
+    },
+    /// The same of the line that holds one eigenvalue.
+    Eigenvalue {
+        /// Its place in ascending order, from 0.
+        index: u32,
     },
     /// To the side.
     Pan {
@@ -84,6 +80,7 @@ pub struct Tick {
 /// A line of the spectrum in the window.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
 #[cfg_attr(target_arch = "wasm32", derive(tsify::Tsify))]
+#[serde(rename_all = "camelCase")]
 pub struct SpectrumMark {
     /// Place in the list of lines, from 0.
     pub line: u32,
@@ -97,6 +94,10 @@ pub struct SpectrumMark {
     pub lower: Option<f64>,
     /// Position of the proven upper end.
     pub upper: Option<f64>,
+    /// Position of the lower end of its range over the tolerances, likewise.
+    pub range_lower: Option<f64>,
+    /// Position of the upper end of it.
+    pub range_upper: Option<f64>,
     /// The figure as printed.
     pub figure: String,
     /// How many marks drawn before it stand so near that they would cover it.
@@ -138,158 +139,6 @@ pub struct SpectrumView {
     pub right_of: u32,
 }
 
-impl Window {
-    /// From the text the page hands back; `None` if it is not one.
-    pub fn parse(text: &str) -> Option<Self> {
-        let mut parts = text.split(':');
-        let centre: IBig = parts.next()?.parse().ok()?;
-        let half: u32 = parts.next()?.parse().ok()?;
-        let unit: i32 = parts.next()?.parse().ok()?;
-        let sound = parts.next().is_none()
-            && half >> HALF_BITS == 1
-            && UNIT_RANGE.contains(&unit)
-            && centre.bit_len() < 16_000;
-        sound.then_some(Self { centre, half, unit })
-    }
-
-    /// The window as text.
-    pub fn text(&self) -> String {
-        format!("{}:{}:{}", self.centre, self.half, self.unit)
-    }
-
-    /// The least window of this form that reaches from `low` to `high`, with
-    /// `margin` half widths to spare on either side.
-    fn around(low: &RBig, high: &RBig, margin: f64) -> Self {
-        let mut span = (high - low).abs();
-        if span.is_zero() {
-            // A single point: a window as wide as the point is far from zero.
-            span = if low.is_zero() {
-                RBig::ONE
-            } else {
-                low.clone().abs()
-            };
-        }
-        let bits = span.numerator().bit_len() as i32 - span.denominator().bit_len() as i32;
-        let unit = (bits - 1 - HALF_BITS as i32).clamp(*UNIT_RANGE.start(), *UNIT_RANGE.end());
-        let half = to_f64(&(span / RBig::from(2) / power_of_two(unit))) * (1.0 + margin);
-        let centre = ((low + high) / RBig::from(2) / power_of_two(unit)).round();
-        Self {
-            centre,
-            half: 0,
-            unit,
-        }
-        .with_half(half)
-    }
-
-    /// The same centre with a half width of `half` units, the unit adapted.
-    fn with_half(mut self, half: f64) -> Self {
-        let (low, high) = (
-            f64::from(1u32 << HALF_BITS),
-            f64::from(1u32 << (HALF_BITS + 1)),
-        );
-        let mut half = if half.is_finite() {
-            half.max(1e-3)
-        } else {
-            high
-        };
-        while half >= high && self.unit < *UNIT_RANGE.end() {
-            half /= 2.0;
-            self.unit += 1;
-            self.centre >>= 1;
-        }
-        while half < low && self.unit > *UNIT_RANGE.start() {
-            half *= 2.0;
-            self.unit -= 1;
-            self.centre <<= 1;
-        }
-        self.half = half.clamp(low, high - 1.0) as u32;
-        self
-    }
-
-    /// The window after a move.
-    pub fn moved(self, by: &WindowMove, lines: &[Line]) -> Self {
-        match by {
-            WindowMove::Stay => self,
-            WindowMove::All => Self::all(lines),
-            WindowMove::Lens { line } => match lines.get(*line as usize) {
-                Some(line) => Self::lens(line, lines),
-                None => self,
-            },
-            WindowMove::Pan { by } => {
-                let step = by.clamp(-1e3, 1e3) * f64::from(self.half);
-                Self {
-                    centre: self.centre + IBig::from(step as i64),
-                    ..self
-                }
-            }
-            WindowMove::Zoom { factor, about } => {
-                let factor = if factor.is_finite() {
-                    factor.clamp(1e-3, 1e3)
-                } else {
-                    1.0
-                };
-                let about = about.clamp(-1.0, 1.0);
-                let half = f64::from(self.half);
-                let shift = about * (half - half * factor);
-                let centre = self.centre + IBig::from(shift as i64);
-                Self {
-                    centre,
-                    half: self.half,
-                    unit: self.unit,
-                }
-                .with_half(half * factor)
-            }
-        }
-    }
-
-    /// The window over all lines.
-    pub fn all(lines: &[Line]) -> Self {
-        let lowest = lines.iter().map(|line| &line.approx).min();
-        let highest = lines.iter().map(|line| &line.approx).max();
-        match (lowest, highest) {
-            (Some(low), Some(high)) => Self::around(low, high, 0.1),
-            _ => Self::around(&RBig::ZERO, &RBig::ZERO, 0.0),
-        }
-    }
-
-    /// A line's enclosure over half of the width; without a proof, the
-    /// distance to its nearest neighbour.
-    fn lens(line: &Line, lines: &[Line]) -> Self {
-        if let Some((low, high)) = &line.enclosure {
-            if low < high {
-                return Self::around(low, high, 1.0);
-            }
-        }
-        let gap = lines
-            .iter()
-            .map(|other| (&other.approx - &line.approx).abs())
-            .filter(|gap| !gap.is_zero())
-            .min();
-        match gap {
-            Some(gap) => Self::around(&(&line.approx - &gap), &(&line.approx + &gap), 0.2),
-            None => Self::around(&line.approx, &line.approx, 0.1),
-        }
-    }
-
-    /// Position of x: −1 at the left edge, 1 at the right, cut off at ±2.
-    fn position(&self, x: &RBig) -> f64 {
-        let units = x / power_of_two(self.unit) - RBig::from(self.centre.clone());
-        let reach = RBig::from(2 * u64::from(self.half));
-        if units >= reach {
-            return 2.0;
-        }
-        if units <= -reach {
-            return -2.0;
-        }
-        to_f64(&units) / f64::from(self.half)
-    }
-
-    fn edge(&self, side: i8) -> RBig {
-        let units = &self.centre + IBig::from(i64::from(side) * i64::from(self.half));
-        RBig::from(units) * power_of_two(self.unit)
-    }
-}
-
 /// Marks nearer than this, in half widths, are stacked: two pixels of a line
 /// 800 pixels wide.
 const STACKING_DISTANCE: f64 = 0.005;
@@ -302,6 +151,10 @@ pub fn view(window: &Window, lines: &[Line]) -> SpectrumView {
         let at = window.position(&line.approx);
         let ends = line
             .enclosure
+            .as_ref()
+            .map(|(low, high)| (window.position(low), window.position(high)));
+        let range = line
+            .range
             .as_ref()
             .map(|(low, high)| (window.position(low), window.position(high)));
         let (low, high) = ends.unwrap_or((at, at));
@@ -324,6 +177,8 @@ pub fn view(window: &Window, lines: &[Line]) -> SpectrumView {
                 at,
                 lower: ends.map(|ends| ends.0),
                 upper: ends.map(|ends| ends.1),
+                range_lower: range.map(|range| range.0),
+                range_upper: range.map(|range| range.1),
                 figure: line.figure.clone(),
                 stacked,
             });
@@ -335,11 +190,7 @@ pub fn view(window: &Window, lines: &[Line]) -> SpectrumView {
         prefix: axis.prefix,
         ticks: axis.ticks,
         step: axis.step,
-        width: decimal::significant(
-            &(RBig::from(2 * u64::from(window.half)) * power_of_two(window.unit)),
-            2,
-            Rounding::Nearest,
-        ),
+        width: window.width(),
         lines: lines
             .iter()
             .map(|line| LineRange {
@@ -351,100 +202,6 @@ pub fn view(window: &Window, lines: &[Line]) -> SpectrumView {
         left_of,
         right_of,
     }
-}
-
-struct Axis {
-    prefix: String,
-    ticks: Vec<Tick>,
-    step: String,
-}
-
-impl Axis {
-    /// Ticks at multiples of 1, 2 or 5 times a power of ten: at least four
-    /// of them, at most ten.
-    fn of(window: &Window) -> Self {
-        let (left, right) = (window.edge(-1), window.edge(1));
-        let fifth = (&right - &left) / RBig::from(5);
-        let place = decimal::leading_place(&fifth).unwrap_or(0);
-        let ten = decimal::ten_to(place);
-        let mantissa = [5u8, 2, 1]
-            .into_iter()
-            .find(|m| &ten * RBig::from(*m) <= fifth)
-            .unwrap_or(1);
-        let step = ten * RBig::from(mantissa);
-        let mut count = (&left / &step).ceil();
-        let last = (&right / &step).floor();
-        let mut ticks = Vec::new();
-        while count <= last {
-            let n = &count * IBig::from(mantissa);
-            let at = window.position(&(RBig::from(count.clone()) * &step));
-            ticks.push(Tick {
-                at,
-                label: label(&n, place),
-            });
-            count += IBig::ONE;
-        }
-        let prefix = shared_beginning(&ticks);
-        for tick in &mut ticks {
-            tick.label.drain(..prefix.len());
-        }
-        Self {
-            prefix,
-            ticks,
-            step: label(&IBig::from(mantissa), place),
-        }
-    }
-}
-
-/// n·10^place; the zeros of a whole number are known, so they may be written.
-fn label(n: &IBig, place: i32) -> String {
-    let text = match u32::try_from(place) {
-        Ok(zeros @ 1..=6) => decimal::written(&(n * IBig::from(10u32.pow(zeros))), 0),
-        _ => decimal::written(n, place),
-    };
-    decimal::typeset(&text)
-}
-
-/// What all labels begin with, if that is long enough to be worth taking out;
-/// at least three characters are left to each.
-fn shared_beginning(ticks: &[Tick]) -> String {
-    let Some(first) = ticks.first() else {
-        return String::new();
-    };
-    // Labels with a power of ten have their tail in common, not their head.
-    if ticks.iter().any(|tick| tick.label.contains('e')) {
-        return String::new();
-    }
-    let shared = ticks
-        .iter()
-        .map(|tick| {
-            tick.label
-                .bytes()
-                .zip(first.label.bytes())
-                .take_while(|(a, b)| a == b)
-                .count()
-        })
-        .min()
-        .unwrap_or(0);
-    let shortest = ticks.iter().map(|tick| tick.label.len()).min().unwrap_or(0);
-    let cut = shared.min(shortest.saturating_sub(3));
-    if cut < 6 {
-        return String::new();
-    }
-    first.label[..cut].to_owned()
-}
-
-fn power_of_two(power: i32) -> RBig {
-    let magnitude = RBig::from(UBig::ONE << (power.unsigned_abs() as usize));
-    if power >= 0 {
-        magnitude
-    } else {
-        RBig::ONE / magnitude
-    }
-}
-
-fn to_f64(x: &RBig) -> f64 {
-    x.to_f64().value()
 }
 
 #[cfg(test)]

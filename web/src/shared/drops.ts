@@ -1,7 +1,7 @@
-/** A file dropped anywhere on the page is opened; a first paste outside any field too. */
-import { isUntouchedExample } from './examples';
+/** A file dropped on the page is opened, on the claims claimed; a first paste outside any field is opened too. */
+import { isUntouchedExample, replaceExample } from './examples';
+import { claimFiles } from './claims';
 import { openFile } from './files';
-import { EMPTY_DOCUMENT, replaceDocument } from './store';
 
 function holdsFiles(event: DragEvent): boolean {
   return event.dataTransfer?.types.includes('Files') ?? false;
@@ -23,15 +23,18 @@ export function followDrops(): void {
   });
   addEventListener('drop', (event) => {
     classList.remove('dropping');
-    const file = event.dataTransfer?.files[0];
-    if (file === undefined) return;
+    const files = [...(event.dataTransfer?.files ?? [])];
+    const [first] = files;
+    if (first === undefined) return;
     event.preventDefault();
-    void openFile(file);
+    // Over the claims a file is another program's output; elsewhere a problem.
+    if (event.target instanceof Element && event.target.closest('#claims') !== null) void claimFiles(files);
+    else void openFile(first);
   });
   addEventListener('paste', (event) => {
     const text = event.clipboardData?.getData('text/plain') ?? '';
     if (text === '' || isField(event.target) || !isUntouchedExample()) return;
     event.preventDefault();
-    replaceDocument({ ...EMPTY_DOCUMENT, matrix: text });
+    replaceExample(text);
   });
 }

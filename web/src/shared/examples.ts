@@ -1,5 +1,5 @@
 /** The example problems that ship with the page, in the order of their files. */
-import { notice, openDocument, replaceDocument, sheet } from './store';
+import { type Dated, EMPTY_DOCUMENT, notice, openDocument, replaceDocument, sheet } from './store';
 import type { Opened, ProblemDocument } from './generated/eigenledger';
 import { withWorkbench } from './worker';
 
@@ -23,12 +23,25 @@ export const examples: readonly Example[] = Object.entries(files)
     json,
   }));
 
-/** Revision of the document when the first visit's example was put there. */
-let firstExampleRevision: number | null = null;
+/** The first visit's example as it was put there, and the revision it got. */
+let firstExample: Dated<ProblemDocument> | null = null;
 
-/** Whether the page still shows the example of a first visit, as it came. */
+/** Whether the page still shows the problem of a first visit, as it came. */
 export function isUntouchedExample(): boolean {
-  return firstExampleRevision === sheet.value.revision;
+  return firstExample !== null && firstExample.revision === sheet.value.revision;
+}
+
+/** Puts a matrix in place of the first example; what was typed beside that is kept. */
+export function replaceExample(matrix: string): void {
+  const { title, notes, claims } = sheet.value.value;
+  const before = firstExample?.value;
+  replaceDocument({
+    ...EMPTY_DOCUMENT,
+    title: title === before?.title ? '' : title,
+    notes: notes === before?.notes ? '' : notes,
+    claims,
+    matrix,
+  });
 }
 
 async function open(example: Example, put: (document: ProblemDocument) => void): Promise<void> {
@@ -50,5 +63,5 @@ export async function openFirstExample(): Promise<void> {
   if (example === undefined) return;
   // In silence: a notice about a link that could not be opened has to stay.
   await open(example, replaceDocument);
-  firstExampleRevision = sheet.value.revision;
+  firstExample = sheet.value;
 }

@@ -23,7 +23,7 @@ export const EMPTY_DOCUMENT: ProblemDocument = {
   claims: [],
 };
 
-/** The document on the page and its revision, which every change raises. */
+/** The document on the page and its revision, which every change of the problem in it raises. */
 export const sheet = signal<Dated<ProblemDocument>>({
   revision: 0,
   value: EMPTY_DOCUMENT,
@@ -104,7 +104,19 @@ export function openDocument(value: ProblemDocument, said: string): void {
   notice.value = { tone: 'information', text: said, action: { label: 'bring back the one before', run } };
 }
 
+/** Fields that change no figure of the problem: nothing is outdated by them. */
+const BESIDE_THE_PROBLEM: readonly string[] = ['title', 'notes', 'claims'] satisfies (keyof ProblemDocument)[];
+
 /** Changes some fields of the document. */
 export function changeDocument(change: Partial<ProblemDocument>): void {
-  replaceDocument({ ...sheet.value.value, ...change });
+  const { revision, value } = sheet.value;
+  const next = { ...value, ...change };
+  if (Object.keys(change).every((field) => BESIDE_THE_PROBLEM.includes(field))) sheet.value = { revision, value: next };
+  else replaceDocument(next);
 }
+
+/** What stands beside the problem, as one text that changes with it. */
+export const headingKey = computed(() => {
+  const { title, notes, claims } = sheet.value.value;
+  return JSON.stringify([title, notes, claims]);
+});

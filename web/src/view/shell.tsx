@@ -1,7 +1,29 @@
 /** The sheet, its masthead and the foot line. */
+import { signal } from '@preact/signals';
+import { useEffect } from 'preact/hooks';
+
 import { notice, outdated } from '../shared/store';
 import { FootLine } from './foot';
 import { sections, type SectionEntry } from './sections';
+
+/** The section that the upper part of the window shows. */
+const inView = signal<string>('problem');
+
+/** Follows the section in view from now on; returns how to stop. */
+function followSections(): () => void {
+  // A band below the masthead: the section that crosses it is the one being read.
+  const observer = new IntersectionObserver(
+    (crossings) => {
+      for (const { isIntersecting, target } of crossings) if (isIntersecting) inView.value = target.id;
+    },
+    { rootMargin: '-20% 0px -75% 0px' },
+  );
+  for (const { id } of sections) {
+    const section = document.getElementById(id);
+    if (section !== null) observer.observe(section);
+  }
+  return () => { observer.disconnect(); };
+}
 
 function Section({ entry }: { entry: SectionEntry }) {
   const stale = entry.derived && outdated.value;
@@ -41,6 +63,7 @@ function Notice() {
 }
 
 export function Shell() {
+  useEffect(followSections, []);
   return (
     <>
       <header class="masthead">
@@ -53,7 +76,11 @@ export function Shell() {
           <ul>
             {sections.map(({ id, heading }) => (
               <li key={id}>
-                <a href={`#${id}`} onClick={goTo(id)}>
+                <a
+                  href={`#${id}`}
+                  aria-current={inView.value === id ? 'true' : undefined}
+                  onClick={goTo(id)}
+                >
                   {heading}
                 </a>
               </li>

@@ -138,3 +138,40 @@ fn a_cancelled_proof_keeps_what_was_proven() {
         }
     }
 }
+
+#[test]
+fn a_zero_eigenvalue_reaches_the_digits_by_its_width() {
+    // Rank one: n·0.3 and zeros.
+    for order in [2, 4] {
+        let problem = standard(hermitian(order, |_, _| decimal(3, -1), None));
+        let proof = prove(
+            &problem,
+            &approximate(&problem, 0),
+            Level::Deep { digits: 60 },
+            &mut Unattended,
+        );
+        let (count, least) = proof.held_at_zero().expect("zero is enclosed");
+        assert_eq!(count, order - 1, "order {order}");
+        assert!(least >= Some(60), "order {order}: {least:?}");
+        assert_eq!(proof.verdict(ConditionKind::Digits), Verdict::Proved);
+        let digits = proof
+            .conditions()
+            .iter()
+            .find(|condition| condition.kind() == ConditionKind::Digits);
+        let sentence = digits.expect("a condition").sentence();
+        assert!(sentence.contains("1e-60 of the largest"), "{sentence}");
+    }
+}
+
+#[test]
+fn a_zero_matrix_is_known_exactly_and_holds_nothing_open() {
+    let problem = standard(hermitian(3, |_, _| decimal(0, 0), None));
+    let proof = prove(
+        &problem,
+        &approximate(&problem, 0),
+        Level::Deep { digits: 30 },
+        &mut Unattended,
+    );
+    assert_eq!(proof.held_at_zero(), None);
+    assert_eq!(proof.verdict(ConditionKind::Digits), Verdict::Proved);
+}

@@ -1,10 +1,13 @@
 use super::*;
+use crate::report::decimal;
+use dashu_int::{IBig, UBig};
 
 fn line(index: u32, value: RBig, half_width: Option<RBig>) -> Line {
     Line {
         first: index,
         last: index,
         enclosure: half_width.map(|w| (&value - &w, &value + &w)),
+        range: None,
         approx: value,
         figure: String::new(),
     }
@@ -125,6 +128,47 @@ fn moves_with_nonsense_in_them_are_survived() {
         assert!(
             Window::parse(&moved.text()).is_some(),
             "{by:?} gave {moved:?}"
+        );
+    }
+}
+
+#[test]
+fn an_eigenvalue_is_found_in_the_line_that_holds_it() {
+    let mut lines: Vec<Line> = (0..3)
+        .map(|k| line(2 * k + 1, ratio(i64::from(k), 1), Some(ratio(1, 1000))))
+        .collect();
+    for line in &mut lines {
+        line.last = line.first + 1;
+    }
+    let all = Window::all(&lines);
+    let lens = |place| all.clone().moved(&WindowMove::Lens { line: place }, &lines);
+    for index in 0..6 {
+        let found = all.clone().moved(&WindowMove::Eigenvalue { index }, &lines);
+        assert_eq!(found, lens(index / 2), "eigenvalue {index}");
+    }
+    let beyond = all
+        .clone()
+        .moved(&WindowMove::Eigenvalue { index: 6 }, &lines);
+    assert_eq!(beyond, all);
+}
+
+#[test]
+fn ranges_are_inside_their_window_and_wider_than_enclosures() {
+    let mut lines: Vec<Line> = (0..3)
+        .map(|k| line(k + 1, ratio(i64::from(k), 1), Some(ratio(1, 1000))))
+        .collect();
+    for line in &mut lines {
+        line.range = Some((&line.approx - ratio(7, 1), &line.approx + ratio(9, 1)));
+    }
+    let window = Window::all(&lines).moved(&WindowMove::Ranges, &lines);
+    for mark in view(&window, &lines).marks {
+        let (Some(low), Some(high)) = (mark.range_lower, mark.range_upper) else {
+            panic!("no range in {mark:?}");
+        };
+        assert!(-1.0 < low && high < 1.0, "{mark:?}");
+        assert!(
+            mark.lower > Some(low) && mark.upper < Some(high),
+            "{mark:?}"
         );
     }
 }

@@ -1,9 +1,10 @@
 /** The Claims section: stated numbers and their verdicts, a claim a line. */
-import { useState } from 'preact/hooks';
+import { useRef, useState } from 'preact/hooks';
 
 import type { Item, Line, Verdict } from '../../shared/generated/eigenledger';
+import { claimFiles } from '../../shared/claims';
 import { figuresKey } from '../../shared/proof';
-import { changeDocument, latestSolution, sheet } from '../../shared/store';
+import { changeDocument, latestSolution, sheet, solution } from '../../shared/store';
 import { callback } from '../../shared/worker';
 import { Figure, type Mark } from '../parts/margin';
 import { useRemote } from '../parts/remote';
@@ -102,6 +103,29 @@ function Claim({ line, first }: { line: Line; first: boolean }) {
   );
 }
 
+function FilePicker() {
+  const picker = useRef<HTMLInputElement>(null);
+  return (
+    <>
+      <button type="button" disabled={solution.value === null} onClick={() => picker.current?.click()}>
+        Claim output files…
+      </button>
+      <input
+        ref={picker}
+        type="file"
+        multiple
+        hidden
+        aria-label="Another program’s output files"
+        onChange={(event) => {
+          const files = [...(event.currentTarget.files ?? [])];
+          event.currentTarget.value = '';
+          if (files.length > 0) void claimFiles(files);
+        }}
+      />
+    </>
+  );
+}
+
 function Editor() {
   const kept = (sheet.value.value.claims ?? []).join('\n');
   const [draft, setDraft] = useState<string | null>(null);
@@ -129,9 +153,11 @@ function Editor() {
         <button type="submit" class={draft === null ? '' : 'primary'} disabled={draft === null || draft === kept}>
           Judge
         </button>
+        <FilePicker />
         <span class="soft">
           eigenvalue, eigenvalues, vector for …, tridiagonal, reflector …, matrix … (after so many steps), cholesky,
-          polynomial, determinant, trace, condition number and others
+          polynomial, determinant, trace, condition number and others; another program’s values and vectors may be
+          dropped here as CSV, JSON, .npy or Matrix Market files
         </span>
       </p>
     </form>

@@ -1,5 +1,6 @@
 /** Stated intervals against proven ones, on one line. */
 import type { Drawn, Item } from '../../shared/generated/eigenledger';
+import { between } from '../parts/geometry';
 
 const WIDTH = 1000;
 const ROW = 26;
@@ -26,7 +27,7 @@ export function ClaimPicture({ items }: { items: readonly Item[] }) {
   const shown = items.flatMap((item) => (item.drawn === undefined ? [] : [{ item, drawn: item.drawn }]));
   const [low, high] = reach(shown);
   if (shown.length === 0 || shown.length > 40 || !(high > low)) return null;
-  const x = (value: number) => EDGE + ((value - low) / (high - low)) * (WIDTH - 2 * EDGE);
+  const x = between(low, high, EDGE, WIDTH - EDGE);
   const height = shown.length * ROW + 8;
   return (
     <svg class="claim-picture" viewBox={`0 0 ${String(WIDTH)} ${String(height)}`} role="img" aria-label="stated intervals above proven ones, a line each; the table has the figures">

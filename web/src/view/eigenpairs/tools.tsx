@@ -1,7 +1,7 @@
 /** Digits to show, copying, and files. */
 import type { ExportKind } from '../../shared/generated/eigenledger';
 import { copyText, saveFile } from '../../shared/files';
-import { digits, notice, reportTrouble } from '../../shared/store';
+import { digits, notice, reportTrouble, sheet } from '../../shared/store';
 import { withWorkbench } from '../../shared/worker';
 import { useState } from 'preact/hooks';
 
@@ -32,7 +32,10 @@ function isKind(value: string): value is ExportKind {
 
 async function handOver(kind: ExportKind, way: 'copy' | 'download'): Promise<void> {
   try {
-    const file = await withWorkbench((bench) => bench.export_results(kind));
+    const file = await withWorkbench(async (bench) => {
+      await bench.take_heading(sheet.value.value);
+      return bench.export_results(kind);
+    });
     if (file === undefined) return;
     if (way === 'download') {
       saveFile(file.name, file.mediaType, file.text);

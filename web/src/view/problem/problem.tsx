@@ -3,8 +3,8 @@ import { computed } from '@preact/signals';
 import { useCallback } from 'preact/hooks';
 
 import type { Adjustment } from '../../shared/generated/eigenledger';
-import { isUntouchedExample } from '../../shared/examples';
-import { changeDocument, EMPTY_DOCUMENT, latestReading, reading, replaceDocument, sheet } from '../../shared/store';
+import { isUntouchedExample, replaceExample } from '../../shared/examples';
+import { changeDocument, latestReading, reading, sheet } from '../../shared/store';
 import { Parameters } from './parameters';
 import { TextPart } from './text-part';
 import { Tools } from './tools';
@@ -18,7 +18,7 @@ const metricText = computed(() => sheet.value.value.metric ?? '');
 /** The example of a first visit gives way to the first paste, whole. */
 function pasteReplaces(text: string): boolean {
   if (!isUntouchedExample()) return false;
-  replaceDocument({ ...EMPTY_DOCUMENT, matrix: text });
+  replaceExample(text);
   return true;
 }
 
@@ -114,7 +114,7 @@ export function Problem() {
       )}
       <Parameters list={parameters} diagnostics={shown?.parameters ?? []} />
       <p class="caution">
-        Where people may be hurt by a wrong figure, local codes and a licensed practitioner’s judgement come first: this
+        Where structures, machines or people depend on a figure, local codes and licensed practice come first: this
         sheet vouches for the arithmetic, not for the model.
       </p>
     </>

@@ -1,11 +1,14 @@
 /** The certificate: everything another program needs to check the proof. */
 import { saveFile } from '../../shared/files';
-import { reportTrouble, solution } from '../../shared/store';
+import { reportTrouble, sheet, solution } from '../../shared/store';
 import { withWorkbench } from '../../shared/worker';
 
 async function download(): Promise<void> {
   try {
-    const file = await withWorkbench((bench) => bench.certificate());
+    const file = await withWorkbench(async (bench) => {
+      await bench.take_heading(sheet.value.value);
+      return bench.certificate();
+    });
     if (file !== undefined) saveFile(file.name, file.mediaType, file.text);
   } catch (reason) {
     reportTrouble(reason);

@@ -1,14 +1,14 @@
 /** The Proof section: what is proven, on which conditions, and what is not. */
 import { cancelProof, proof, proving, requestProof } from '../../shared/proof';
-import { latestSolution, solution } from '../../shared/store';
+import { chosenEigenvalue, latestSolution, solution } from '../../shared/store';
 import type { ConditionView, ProofView } from '../../shared/generated/eigenledger';
 import { useState } from 'preact/hooks';
 import { Figure } from '../parts/margin';
 import { SpectrumLine } from '../spectrum/line';
 import { Certificate } from './certificate';
 import { ExactRoad } from './exact';
+import { Tolerances } from './tolerances';
 
-const CHOSEN = { move: 'lens', line: 0 } as const;
 const DIGITS_AT_FIRST = 50;
 const MOST_DIGITS = 1000;
 
@@ -101,6 +101,7 @@ export function Proof() {
     return <p class="soft">Nothing is proven yet: the problem is not solved.</p>;
   }
   const view = proof.value;
+  const chosen = Math.max(0, chosenEigenvalue.value ?? 0);
   return (
     <>
       {view === null ? (
@@ -108,7 +109,11 @@ export function Proof() {
       ) : (
         <>
           <p class="words">{view.words}</p>
-          <SpectrumLine label="The chosen eigenvalue’s enclosure" start={CHOSEN} />
+          <SpectrumLine
+            label="The chosen eigenvalue’s enclosure"
+            start={{ move: 'eigenvalue', index: chosen }}
+            afresh={`${view.key} ${String(chosen)}`}
+          />
         </>
       )}
       <Further />
@@ -117,6 +122,7 @@ export function Proof() {
           {view.conditions.map((condition, place) => (
             <Condition key={place} condition={condition} />
           ))}
+          <Tolerances />
           <Rests view={view} />
           <Certificate />
         </>

@@ -3,13 +3,16 @@ import { useRef } from 'preact/hooks';
 
 import { saveFile } from '../../shared/files';
 import { figuresKey } from '../../shared/proof';
-import { latestSolution, solution } from '../../shared/store';
+import { headingKey, latestSolution, sheet, solution } from '../../shared/store';
 import { useRemote } from '../parts/remote';
 
 export function Sheet() {
   const frame = useRef<HTMLIFrameElement>(null);
   const key = figuresKey.value;
-  const file = useRemote(key, (bench) => bench.report());
+  const file = useRemote(key === null ? null : `${key} ${headingKey.value}`, async (bench) => {
+    await bench.take_heading(sheet.value.value);
+    return bench.report();
+  });
   if (latestSolution.value === null) return <p class="soft">No sheet yet: the problem is not solved.</p>;
   if (file === undefined) return null;
   return (

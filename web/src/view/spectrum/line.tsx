@@ -8,84 +8,16 @@ import { useEffect, useRef, useState } from 'preact/hooks';
 import type { SpectrumMark, SpectrumView, WindowMove } from '../../shared/generated/eigenledger';
 import { figuresKey } from '../../shared/proof';
 import { chosenEigenvalue, digits, latestSolution } from '../../shared/store';
+import { between, sideways } from '../parts/geometry';
 import { useRemote } from '../parts/remote';
 import { useWidth } from '../parts/width';
+import { Axis, AXIS_Y, MARK_HEIGHT, MarkShape, MOST_STACKED, STACK_STEP } from './marks';
 
 const WIDTH_AT_FIRST = 1000;
 const HEIGHT = 128;
 /** Room above the highest mark, for counts and for what lies beyond. */
 const HEADROOM = 24;
-const AXIS_Y = 92;
-const MARK_HEIGHT = 34;
-const STACK_STEP = 9;
-const MOST_STACKED = 6;
-/** Narrower enclosures are drawn as a single stroke, in view units. */
-const NARROWEST_BAR = 3;
 const ZOOM_STEP = 0.5;
-/** About the width of a digit of a label, in pixels. */
-const LABEL_DIGIT_WIDTH = 9;
-
-type Place = (at: number) => number;
-
-function MarkShape({ mark, chosen, x }: { mark: SpectrumMark; chosen: boolean; x: Place }) {
-  const count = mark.last - mark.first + 1;
-  const lift = Math.min(mark.stacked, MOST_STACKED) * STACK_STEP;
-  const top = AXIS_Y - MARK_HEIGHT - lift;
-  const proven = mark.lower !== undefined && mark.upper !== undefined;
-  const left = x(mark.lower ?? mark.at);
-  const right = x(mark.upper ?? mark.at);
-  const wide = right - left > NARROWEST_BAR;
-  return (
-    <g class={`spectrum-mark ${proven ? 'enclosed' : ''} ${chosen ? 'chosen' : ''}`}>
-      <rect class="reach" x={Math.min(left, x(mark.at) - 5)} y={top - 4} width={Math.max(right - left, 10)} height={MARK_HEIGHT + lift + 8} />
-      {proven && wide && (
-        <>
-          <rect class="enclosure" x={left} y={top + 6} width={right - left} height={AXIS_Y - top - 6} />
-          <path class="ends" d={`M${String(left + 5)} ${String(top + 6)}H${String(left)}V${String(AXIS_Y)}M${String(right - 5)} ${String(top + 6)}H${String(right)}V${String(AXIS_Y)}`} />
-        </>
-      )}
-      {mark.stacked === 0 ? (
-        <line class="stem" x1={x(mark.at)} x2={x(mark.at)} y1={top + 6} y2={AXIS_Y} />
-      ) : null}
-      {mark.stacked <= MOST_STACKED && <circle cx={x(mark.at)} cy={top + 6} r={count > 1 ? 5 : 3.6} />}
-      {count > 1 && (
-        <text class="count" x={x(mark.at)} y={top - 6} text-anchor="middle">
-          ×{count}
-        </text>
-      )}
-    </g>
-  );
-}
-
-function Axis({ view, top, width, x }: { view: SpectrumView; top: number; width: number; x: Place }) {
-  const longest = Math.max(1, ...view.ticks.map((tick) => tick.label.length + 2));
-  const every = Math.max(1, Math.ceil((view.ticks.length * longest * LABEL_DIGIT_WIDTH) / width));
-  return (
-    <g class="axis" aria-hidden="true">
-      <line x1={0} x2={width} y1={AXIS_Y} y2={AXIS_Y} />
-      {view.ticks.map((tick, place) => (
-        <g key={tick.label}>
-          <line x1={x(tick.at)} x2={x(tick.at)} y1={AXIS_Y} y2={AXIS_Y + 6} />
-          {place % every === 0 && (
-            <text x={x(tick.at)} y={AXIS_Y + 22} text-anchor="middle">
-              {view.prefix === '' ? tick.label : `…${tick.label}`}
-            </text>
-          )}
-        </g>
-      ))}
-      {view.leftOf > 0 && (
-        <text class="beyond" x={4} y={top + 16}>
-          ◂ {view.leftOf}
-        </text>
-      )}
-      {view.rightOf > 0 && (
-        <text class="beyond" x={width - 4} y={top + 16} text-anchor="end">
-          {view.rightOf} ▸
-        </text>
-      )}
-    </g>
-  );
-}
 
 function alternative(view: SpectrumView, label: string): string {
   const seen = view.marks.length === 1 ? '1 mark' : `${String(view.marks.length)} marks`;
@@ -97,31 +29,40 @@ interface Asked {
   readonly move: WindowMove;
 }
 
-/** The line. `start` says what it opens on. */
-export function SpectrumLine({ label, start }: { label: string; start: WindowMove }) {
+interface SpectrumLineProps {
+  readonly label: string;
+  /** What it opens on. */
+  readonly start: WindowMove;
+  /** A new text here makes it open afresh, as a new solution does. */
+  readonly afresh?: string | undefined;
+  /** Whether the ranges over the tolerances are drawn. */
+  readonly ranges?: boolean;
+}
+
+export function SpectrumLine({ label, start, afresh = '', ranges = false }: SpectrumLineProps) {
   const [asked, setAsked] = useState<Asked>({ turn: 0, move: start });
   const shown = useRef<string | undefined>(undefined);
   const answered = useRef(-1);
-  const solved = useRef<number | undefined>(undefined);
+  const opened = useRef<string | undefined>(undefined);
   const [width, setFigure] = useWidth(WIDTH_AT_FIRST);
   const drag = useRef<{ at: number; moved: boolean } | null>(null);
   const picture = useRef<SVGSVGElement>(null);
   const key = figuresKey.value;
   const view = useRemote(
-    key === null ? null : `${key} ${String(digits.value)} ${String(asked.turn)}`,
+    key === null ? null : `${key} ${String(digits.value)} ${String(asked.turn)} ${afresh}`,
     async (bench) => {
       const limit = digits.value === 'proven' ? 0 : digits.value;
       // A move is made once; asked again after a proof, the window stays, and a
       // new solution begins afresh.
-      const { revision } = latestSolution.value ?? {};
-      const fresh = solved.current !== revision;
+      const occasion = `${String(latestSolution.value?.revision)} ${afresh}`;
+      const fresh = opened.current !== occasion;
       const move: WindowMove = fresh ? start : answered.current === asked.turn ? { move: 'stay' } : asked.move;
       if (fresh) shown.current = undefined;
       const seen = await bench.spectrum(shown.current, move, limit);
       if (seen !== undefined) {
         shown.current = seen.window;
         answered.current = asked.turn;
-        solved.current = revision;
+        opened.current = occasion;
       }
       return seen;
     },
@@ -139,16 +80,14 @@ export function SpectrumLine({ label, start }: { label: string; start: WindowMov
     const turnWheel = (event: WheelEvent) => {
       if (document.activeElement !== svg && !event.ctrlKey) return;
       event.preventDefault();
-      const box = svg.getBoundingClientRect();
-      const about = ((event.clientX - box.left) / box.width) * 2 - 1;
-      askLatest.current({ move: 'zoom', factor: event.deltaY > 0 ? 1 / 0.8 : 0.8, about });
+      askLatest.current({ move: 'zoom', factor: event.deltaY > 0 ? 1 / 0.8 : 0.8, about: sideways(event, svg) });
     };
     svg.addEventListener('wheel', turnWheel, { passive: false });
     return () => { svg.removeEventListener('wheel', turnWheel); };
   }, [present]);
 
   if (view === undefined) return null;
-  const x = (at: number) => ((at + 1) / 2) * width;
+  const x = between(-1, 1, 0, width);
   const highest = Math.min(MOST_STACKED, Math.max(0, ...view.marks.map((mark) => mark.stacked)));
   const top = AXIS_Y - MARK_HEIGHT - highest * STACK_STEP - HEADROOM;
   const chosen = chosenEigenvalue.value ?? 0;
@@ -197,8 +136,7 @@ export function SpectrumLine({ label, start }: { label: string; start: WindowMov
     const began = drag.current;
     drag.current = null;
     if (svg === null || began === null || began.moved) return;
-    const box = svg.getBoundingClientRect();
-    const at = ((event.clientX - box.left) / box.width) * 2 - 1;
+    const at = sideways(event, svg);
     let nearest: SpectrumMark | undefined;
     for (const mark of view.marks) {
       if (nearest === undefined || Math.abs(mark.at - at) < Math.abs(nearest.at - at)) nearest = mark;
@@ -220,7 +158,7 @@ export function SpectrumLine({ label, start }: { label: string; start: WindowMov
       >
         <Axis view={view} top={top} width={width} x={x} />
         {view.marks.map((mark) => (
-          <MarkShape key={mark.line} mark={mark} chosen={isChosen(mark)} x={x} />
+          <MarkShape key={mark.line} mark={mark} chosen={isChosen(mark)} ranges={ranges} x={x} />
         ))}
       </svg>
       <figcaption>

@@ -1,6 +1,7 @@
 /** The off-diagonals falling sweep by sweep, with the deflations marked. */
 import type { HistoryView } from '../../shared/generated/eigenledger';
 import { chosenEntry } from '../../shared/store';
+import { between, labelledEvery } from '../parts/geometry';
 import { useRemote } from '../parts/remote';
 import { useWidth } from '../parts/width';
 
@@ -14,9 +15,9 @@ const SWEEP_LABEL_WIDTH = 60;
 
 function Picture({ view, width }: { view: HistoryView; width: number }) {
   const span = Math.max(1, view.sweeps);
-  const x = (sweep: number) => LEFT + 6 + (sweep / span) * (width - LEFT - 16);
-  const y = (height: number) => FOOT - height * (FOOT - HEAD);
-  const every = Math.max(1, Math.ceil((view.sweeps * SWEEP_LABEL_WIDTH) / width));
+  const x = between(0, span, LEFT + 6, width - 10);
+  const y = between(0, 1, FOOT, HEAD);
+  const every = labelledEvery(view.sweeps, SWEEP_LABEL_WIDTH, width);
   const sweeps = Array.from({ length: Math.floor(view.sweeps / every) + 1 }, (_, k) => k * every);
   return (
     <svg viewBox={`0 0 ${String(width)} ${String(HEIGHT)}`} role="img" aria-label={view.words}>
