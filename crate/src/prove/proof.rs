@@ -108,9 +108,14 @@ impl Condition {
         self.bound.as_ref()
     }
 
-    /// The bound in print, rounded up to three digits.
+    /// The bound in print, three digits: rounded up, but a gap that is proven at
+    /// least so wide is rounded down.
     pub fn bound_text(&self) -> Option<String> {
-        self.bound.as_ref().map(figure::at_most)
+        let print = match self.kind {
+            ConditionKind::Separation => figure::at_least,
+            _ => figure::at_most,
+        };
+        self.bound.as_ref().map(print)
     }
 
     /// One sentence for the reader.

@@ -123,6 +123,8 @@ pub struct SpectrumView {
     pub window: String,
     /// What all labels of the axis begin with; empty when each is whole.
     pub prefix: String,
+    /// What the labels are distances from; empty when they are places.
+    pub origin: String,
     /// The ticks.
     pub ticks: Vec<Tick>,
     /// Distance between two ticks.
@@ -188,6 +190,7 @@ pub fn view(window: &Window, lines: &[Line]) -> SpectrumView {
     SpectrumView {
         window: window.text(),
         prefix: axis.prefix,
+        origin: axis.origin,
         ticks: axis.ticks,
         step: axis.step,
         width: window.width(),

@@ -53,12 +53,15 @@ test('order 1,000 shows progress, is cancelled, and finishes when asked again', 
 test('a reload in the middle of a run brings the problem back', async () => {
   const { page, assertQuiet } = await openPage(browser);
   const example = await solved(page);
-  await pasteMatrix(page, '5 2\n2 -7.25');
+  const order = 300;
+  const rows = Array.from({ length: order }, (_, row) =>
+    Array.from({ length: order }, (_, col) => ((row * 7 + col * 7 + ((row * col) % 11) * 13) % 97) - 48).join(' '));
+  await pasteMatrix(page, rows.join('\n'));
   // Longer than the pause before a document is written.
   await page.waitForTimeout(1000);
   await page.reload();
   await solved(page, example);
-  assert.match(await matrixEditor(page).innerText(), /-7\.25/);
+  assert.match(await footFigure(page, 'order'), /^300, real/);
   assertQuiet();
 });
 

@@ -26,7 +26,7 @@ test('ranges hold what the corners of a diagonal matrix give, and entries are ra
   await page.locator('#proof .ranking h4', { hasText: '2' }).waitFor();
   await ranking.filter({ hasText: '2, 2' }).waitFor();
   assert.equal(await ranking.count(), 1, 'only entry 2, 2 moves the second eigenvalue');
-  await page.frameLocator('#sheet iframe').getByText('Within the tolerances').waitFor();
+  await page.frameLocator('#sheet iframe').getByRole('heading', { name: 'Within the tolerances' }).waitFor();
   assertQuiet();
 });
 

@@ -13,6 +13,8 @@ pub(super) struct Axis {
     pub prefix: String,
     /// The ticks, their labels without the prefix.
     pub ticks: Vec<Tick>,
+    /// What the labels are distances from; empty when they are places.
+    pub origin: String,
     /// Distance between two of them.
     pub step: String,
 }
@@ -33,6 +35,7 @@ impl Axis {
         let mut count = (&left / &step).ceil();
         let last = (&right / &step).floor();
         let mut ticks = Vec::new();
+        let mut multiples = Vec::new();
         while count <= last {
             let n = &count * IBig::from(mantissa);
             let at = window.position(&(RBig::from(count.clone()) * &step));
@@ -40,18 +43,52 @@ impl Axis {
                 at,
                 label: label(&n, place),
             });
+            multiples.push(n);
             count += IBig::ONE;
         }
         let prefix = shared_beginning(&ticks);
         for tick in &mut ticks {
             tick.label.drain(..prefix.len());
         }
+        let origin = if prefix.is_empty() {
+            from_roundest(&mut ticks, &multiples, place)
+        } else {
+            String::new()
+        };
         Self {
             prefix,
             ticks,
+            origin,
             step: label(&IBig::from(mantissa), place),
         }
     }
+}
+
+/// Labels longer than this are told as distances from one of them.
+const LONGEST_LABEL: usize = 14;
+
+/// Where the labels are long and have no beginning in common (39.2999…, 39.3,
+/// 39.3000…): makes them distances from the roundest one, which it returns.
+fn from_roundest(ticks: &mut [Tick], multiples: &[IBig], place: i32) -> String {
+    let long = |tick: &Tick| tick.label.chars().count() > LONGEST_LABEL;
+    let roundest = multiples.iter().max_by_key(|n| zeros(n));
+    let Some(origin) = roundest.filter(|_| ticks.iter().any(long)) else {
+        return String::new();
+    };
+    for (tick, n) in ticks.iter_mut().zip(multiples) {
+        let distance = n - origin;
+        let sign = if distance > IBig::ZERO { "+" } else { "" };
+        tick.label = format!("{sign}{}", label(&distance, place));
+    }
+    let known = zeros(origin).min(place.min(0).unsigned_abs());
+    let shortened = origin / IBig::from(10u8).pow(known as usize);
+    label(&shortened, place + known as i32)
+}
+
+/// Zeros at the end of the decimal digits of n.
+fn zeros(n: &IBig) -> u32 {
+    let digits = n.to_string();
+    (digits.len() - digits.trim_end_matches('0').len()) as u32
 }
 
 /// n·10^place; the zeros of a whole number are known, so they may be written.

@@ -172,3 +172,28 @@ fn ranges_are_inside_their_window_and_wider_than_enclosures() {
         );
     }
 }
+
+#[test]
+fn labels_that_share_no_beginning_are_told_from_the_roundest() {
+    // 39.3 ± 1e-27: the labels would begin 39.2999… and 39.3000….
+    let width = decimal::ten_to(-27);
+    let lines = [line(1, ratio(393, 10), Some(width))];
+    let window = Window::all(&lines).moved(&WindowMove::Lens { line: 0 }, &lines);
+    let seen = view(&window, &lines);
+    assert_eq!(
+        (seen.origin.as_str(), seen.prefix.as_str()),
+        ("39.3", ""),
+        "{seen:?}"
+    );
+    for tick in &seen.ticks {
+        let expected = if tick.at.abs() < 1e-9 {
+            "0"
+        } else if tick.at < 0.0 {
+            "\u{2212}"
+        } else {
+            "+"
+        };
+        assert!(tick.label.starts_with(expected), "{tick:?}");
+        assert!(tick.label.chars().count() < 10, "{tick:?}");
+    }
+}

@@ -91,7 +91,7 @@ export function ExactRoad() {
   const closed = solution.value === null || proving.value !== null;
   return (
     <>
-      <h3>The exact road</h3>
+      <h3 class={answer === null ? 'screen-only' : ''}>The exact road</h3>
       {answer === null && (
         <p class="screen-only">
           <button type="button" disabled={closed} onClick={() => void requestExact(false)}>

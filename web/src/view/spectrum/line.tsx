@@ -164,6 +164,7 @@ export function SpectrumLine({ label, start, afresh = '', ranges = false }: Spec
       <figcaption>
         <span class="soft">
           {view.prefix === '' ? '' : <>… stands for <span class="digits">{view.prefix}</span>; </>}
+          {view.origin === '' ? '' : <>distances from <span class="digits">{view.origin}</span>; </>}
           one division is <span class="digits">{view.step}</span>
         </span>
         <span class="row screen-only">
