@@ -77,8 +77,12 @@ fn from_roundest(ticks: &mut [Tick], multiples: &[IBig], place: i32) -> String {
     };
     for (tick, n) in ticks.iter_mut().zip(multiples) {
         let distance = n - origin;
-        let sign = if distance > IBig::ZERO { "+" } else { "" };
-        tick.label = format!("{sign}{}", label(&distance, place));
+        tick.label = if distance.is_zero() {
+            "0".to_owned()
+        } else {
+            let sign = if distance > IBig::ZERO { "+" } else { "" };
+            format!("{sign}{}", label(&distance, place))
+        };
     }
     let known = zeros(origin).min(place.min(0).unsigned_abs());
     let shortened = origin / IBig::from(10u8).pow(known as usize);
