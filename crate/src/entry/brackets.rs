@@ -151,15 +151,7 @@ mod tests {
 
     fn texts(source: &str) -> Vec<Vec<String>> {
         let table = read(source, SignedWords::Apart, RawTable::new(20));
-        (0..table.rows())
-            .map(|row| {
-                table
-                    .row(row)
-                    .iter()
-                    .map(|cell| cell.text(source).to_owned())
-                    .collect()
-            })
-            .collect()
+        table.texts(source)
     }
 
     #[test]

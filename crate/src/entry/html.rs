@@ -224,15 +224,7 @@ mod tests {
     fn texts(source: &str) -> Vec<Vec<String>> {
         let mut findings = Findings::new(10);
         let table = read(source, RawTable::new(20), &mut findings);
-        (0..table.rows())
-            .map(|row| {
-                table
-                    .row(row)
-                    .iter()
-                    .map(|cell| cell.text(source).to_owned())
-                    .collect()
-            })
-            .collect()
+        table.texts(source)
     }
 
     #[test]

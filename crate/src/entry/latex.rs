@@ -282,15 +282,7 @@ mod tests {
         let mut findings = Findings::new(10);
         let table = read(source, RawTable::new(20), &mut findings);
         assert!(!findings.has_errors(), "{source:?}");
-        (0..table.rows())
-            .map(|row| {
-                table
-                    .row(row)
-                    .iter()
-                    .map(|cell| cell.text(source).to_owned())
-                    .collect()
-            })
-            .collect()
+        table.texts(source)
     }
 
     #[test]

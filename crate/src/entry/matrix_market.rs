@@ -386,15 +386,7 @@ mod tests {
 
     fn texts(source: &str) -> Result<Vec<Vec<String>>, String> {
         let (table, _) = file(source, RawTable::new(20), 20).map_err(|finding| finding.sentence)?;
-        Ok((0..table.rows())
-            .map(|row| {
-                table
-                    .row(row)
-                    .iter()
-                    .map(|cell| cell.text(source).to_owned())
-                    .collect()
-            })
-            .collect())
+        Ok(table.texts(source))
     }
 
     #[test]

@@ -140,6 +140,15 @@ impl RawTable {
         &self.cells[start..self.row_ends[row] as usize]
     }
 
+    /// The cells as `source` has them, row by row.
+    #[cfg(test)]
+    pub fn texts(&self, source: &str) -> Vec<Vec<String>> {
+        let text = |cell: &RawCell| cell.text(source).to_owned();
+        (0..self.rows())
+            .map(|row| self.row(row).iter().map(text).collect())
+            .collect()
+    }
+
     /// Number of cells in each row kept.
     pub fn widths(&self) -> Vec<usize> {
         (0..self.rows()).map(|row| self.row(row).len()).collect()

@@ -5,6 +5,7 @@ mod proven;
 mod published;
 mod random;
 mod slips;
+mod whatever;
 
 use dashu_ratio::RBig;
 

@@ -4,6 +4,7 @@
 
 use super::*;
 use crate::claim::judge_all;
+use crate::matrix::published::ROSSER;
 
 /// Judges a calculation; expects every line confirmed.
 fn all_right(problem: &Problem, text: &str) {
@@ -139,16 +140,7 @@ fn wilson() {
 /// Rosser, Lanczos, Hestenes and Karush 1951.
 #[test]
 fn rosser() {
-    let problem = real(&[
-        &[611, 196, -192, 407, -8, -52, -49, 29],
-        &[196, 899, 113, -192, -71, -43, -8, -44],
-        &[-192, 113, 899, 196, 61, 49, 8, 52],
-        &[407, -192, 196, 611, 8, 44, 59, -23],
-        &[-8, -71, 61, 8, 411, -599, 208, 208],
-        &[-52, -43, 49, 44, -599, 411, 208, 208],
-        &[-49, -8, 8, 59, 208, 208, 99, -911],
-        &[29, -44, 52, -23, 208, 208, -911, 99],
-    ]);
+    let problem = real(&ROSSER);
     let text = "eigenvalues: 1020.049018430, 1020.000000000, 1019.901951359, \
                 1000.000000000 ×2, 0.098048640722, 0.000000000000, -1020.049018430\n\
                 zero: 1\n\

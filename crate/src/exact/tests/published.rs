@@ -3,21 +3,13 @@
 use dashu_base::Sign;
 
 use super::*;
+use crate::matrix::published::ROSSER;
 
 /// Rosser 1951 (Rosser, Lanczos, Hestenes, Karush, J. Res. NBS 47, 291; from
 /// memory): eigenvalues 10√10405, 1020, 510 ± 100√26, 1000 twice, 0, −10√10405.
 #[test]
 fn rosser() {
-    let problem = real(&[
-        &[611, 196, -192, 407, -8, -52, -49, 29],
-        &[196, 899, 113, -192, -71, -43, -8, -44],
-        &[-192, 113, 899, 196, 61, 49, 8, 52],
-        &[407, -192, 196, 611, 8, 44, 59, -23],
-        &[-8, -71, 61, 8, 411, -599, 208, 208],
-        &[-52, -43, 49, 44, -599, 411, 208, 208],
-        &[-49, -8, 8, 59, 208, 208, 99, -911],
-        &[29, -44, 52, -23, 208, 208, -911, 99],
-    ]);
+    let problem = real(&ROSSER);
     let result = spectrum_of(&problem);
     expect_forms(
         &result,

@@ -7,6 +7,7 @@
 pub mod browser;
 mod budget;
 mod engines;
+mod fuzz;
 pub mod outside;
 mod rust;
 mod tally;
@@ -37,7 +38,7 @@ enum Needs {
 }
 
 /// Cheap steps first, so that a slip of the pen is heard of early.
-const STEPS: [Step; 13] = [
+const STEPS: [Step; 14] = [
     Step {
         name: "format",
         needs: Needs::Sources,
@@ -67,6 +68,11 @@ const STEPS: [Step; 13] = [
         name: "wasm tests",
         needs: Needs::Sources,
         run: rust::wasm_tests,
+    },
+    Step {
+        name: "fuzzing",
+        needs: Needs::Sources,
+        run: fuzz::check,
     },
     Step {
         name: "types of the page",
