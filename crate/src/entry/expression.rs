@@ -8,6 +8,7 @@ use super::complex::ExactComplex;
 use super::expression_lexer::{Lexer, Token};
 use super::number::{below_double, beyond_double};
 use super::parameters::{Lookup, Parameters};
+use crate::num::exact::MAX_BITS;
 use crate::num::ExactReal;
 use dashu_base::UnsignedAbs;
 use std::ops::Range;
@@ -15,8 +16,9 @@ use std::ops::Range;
 /// How deep parentheses, roots, signs and powers may nest.
 const MAX_DEPTH: usize = 64;
 
-/// Greatest whole exponent after ^.
-const MAX_POWER: i32 = 9_999;
+/// Greatest whole exponent after ^: room for the binary fractions that exact
+/// results are printed as.
+const MAX_POWER: i32 = MAX_BITS as i32;
 
 /// Where a product without sign would stand.
 #[derive(Clone, Copy, PartialEq, Eq)]

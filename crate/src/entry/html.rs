@@ -9,17 +9,52 @@ use super::entities;
 use super::raw::{RawCell, RawTable};
 use super::span::Bytes;
 
-/// Whether the text holds an HTML table.
+/// Whether the text holds an HTML table. It must see the same tags as [`read`]:
+/// else an edit of what that takes for a cell may change what the text is.
 pub(crate) fn looks_like(body: &str) -> bool {
-    let mut rest = body;
-    while let Some(at) = rest.find('<') {
-        let name = tag_name(&rest[at..]);
-        if name.eq_ignore_ascii_case("table") || name.eq_ignore_ascii_case("tr") {
+    let mut at = 0;
+    while let Some(mark) = next_mark(body, at) {
+        let table = |name: &str| {
+            ["table", "tr"]
+                .iter()
+                .any(|tag| name.eq_ignore_ascii_case(tag))
+        };
+        if mark.name.is_some_and(table) {
             return true;
         }
-        rest = &rest[at + 1..];
+        at = mark.end;
     }
     false
+}
+
+/// What a `<` begins: a tag of this name, or, without one, a comment or a bare
+/// sign as in 1 < 2.
+struct Mark<'a> {
+    start: usize,
+    end: usize,
+    name: Option<&'a str>,
+    is_text: bool,
+}
+
+/// The next `<` from `at` on, with what it begins.
+fn next_mark(source: &str, at: usize) -> Option<Mark<'_>> {
+    let start = at + source[at..].find('<')?;
+    let rest = &source[start..];
+    let name = tag_name(rest);
+    let (end, name, is_text) = if rest.starts_with("<!--") {
+        let length = rest.find("-->").map_or(rest.len(), |end| end + 3);
+        (start + length, None, false)
+    } else if name.is_empty() || name == "/" {
+        (start + 1, None, true)
+    } else {
+        (tag_end(source, start), Some(name), false)
+    };
+    Some(Mark {
+        start,
+        end,
+        name,
+        is_text,
+    })
 }
 
 /// The name in a tag that begins here, with the slash of a closing tag.
@@ -43,25 +78,15 @@ pub(crate) fn read(source: &str, table: RawTable, findings: &mut Findings) -> Ra
         finished: false,
     };
     let mut at = 0;
-    while let Some(found) = source[at..].find('<') {
-        let open = at + found;
-        reader.take_text(at, open);
-        if source[open..].starts_with("<!--") {
-            at = source[open..]
-                .find("-->")
-                .map_or(source.len(), |end| open + end + 3);
-            continue;
+    while let Some(mark) = next_mark(source, at) {
+        reader.take_text(at, mark.start);
+        if mark.is_text {
+            reader.take_text(mark.start, mark.end);
         }
-        let name = tag_name(&source[open..]);
-        if name.is_empty() || name == "/" {
-            // A bare sign, as in 1 < 2.
-            reader.take_text(open, open + 1);
-            at = open + 1;
-            continue;
+        if let Some(name) = mark.name {
+            reader.take_tag(name, mark.start, mark.end, findings);
         }
-        let close = tag_end(source, open);
-        reader.take_tag(name, open, close, findings);
-        at = close;
+        at = mark.end;
         if reader.finished {
             break;
         }
