@@ -17,7 +17,7 @@ use nalgebra::DMatrix;
 
 /// Largest order that is solved this way; beyond it the roads of O(n²) for the
 /// vectors of T, with Q applied in groups, are faster.
-pub(crate) const LARGEST: usize = 48;
+pub(crate) const LARGEST: usize = 60;
 
 /// A basis in the making. Column-major; a column holds its real parts, padded
 /// to an even number, then its imaginary parts likewise.
