@@ -93,7 +93,7 @@ pub(crate) fn iterate_turning(
     let order = tridiagonal.order();
     let mut work = Work {
         floor: UNIT * UNIT * tridiagonal.row_sum_norm(),
-        settled: vec![Settled::No; order],
+        start: 0,
         sweeps: Vec::with_capacity(2 * order),
         deflations: Vec::with_capacity(order),
         tally: Tally::new(tridiagonal, recorder.listening()),
@@ -110,6 +110,7 @@ pub(crate) fn iterate_turning(
         block.first = work.block_start(block.last, recorder);
         if block.first == block.last {
             block.last -= 1;
+            work.leave(block.last);
             continue;
         }
         let (first, last) = (block.first, block.last);
@@ -147,12 +148,6 @@ pub(crate) fn repeat(state: &mut Tridiagonal, step: SweepStep) {
 /// u.
 const UNIT: f64 = f64::EPSILON / 2.0;
 
-#[derive(Clone, Copy, PartialEq, Eq)]
-enum Settled {
-    Yes,
-    No,
-}
-
 #[derive(Clone, Copy)]
 struct Block {
     first: usize,
@@ -163,7 +158,8 @@ struct Block {
 struct Work {
     state: Tridiagonal,
     floor: f64,
-    settled: Vec<Settled>,
+    /// The row after the last deflation before the present block's last row.
+    start: usize,
     sweeps: Vec<SweepStep>,
     deflations: Vec<(usize, Deflation)>,
     tally: Tally,
@@ -174,10 +170,7 @@ impl Work {
     /// boundary it finds.
     fn block_start(&mut self, last: usize, recorder: &mut dyn Recorder) -> usize {
         let mut next = self.state.diagonal[last].abs();
-        for k in (0..last).rev() {
-            if self.settled[k] == Settled::Yes {
-                return k + 1;
-            }
+        for k in (self.start..last).rev() {
             let size = self.state.off_diagonal[k].abs();
             let d = self.state.diagonal[k].abs();
             // The cheap test lets a little more through than the exact one below.
@@ -198,13 +191,22 @@ impl Work {
             }
             next = d;
         }
-        0
+        self.start
+    }
+
+    /// Goes on to the block that ends in `last`, the rows after it being done.
+    fn leave(&mut self, last: usize) {
+        // Deflations are found from the end, each beyond those still ahead, so
+        // the latest one before `last` is the nearest. At most n² comparisons.
+        let mut found = self.deflations.iter().rev();
+        let nearest = found.find(|(_, deflation)| deflation.index < last);
+        self.start = nearest.map_or(0, |(_, deflation)| deflation.index + 1);
     }
 
     fn deflate(&mut self, deflation: Deflation, recorder: &mut dyn Recorder) {
         let k = deflation.index;
         self.state.off_diagonal[k] = 0.0;
-        self.settled[k] = Settled::Yes;
+        self.start = k + 1;
         self.deflations.push((self.sweeps.len(), deflation));
         if self.tally.listening == Listening::Yes {
             let totals = self.tally.after(&self.state, k, k + 1);

@@ -7,7 +7,8 @@ use crate::reduce::Tridiagonal;
 
 /// Balance and control totals of the iteration. Sums are kept in stretches of
 /// [`STRETCH`] rows; an act on a block takes only its stretches anew, and every
-/// total is the sum over the stretches of the state itself.
+/// total is the sum over the stretches of the state itself. A single stretch is
+/// taken anew each time, so its sums are not kept.
 pub(super) struct Tally {
     pub listening: Listening,
     stretches: Vec<Sums>,
@@ -22,47 +23,54 @@ struct Sums {
 
 const STRETCH: usize = 32;
 
+impl Sums {
+    /// Over the stretch at position `stretch`.
+    fn of(state: &Tridiagonal, stretch: usize) -> Self {
+        let start = stretch * STRETCH;
+        let end = state.order().min(start + STRETCH);
+        let (trace, diagonal) = sums(&state.diagonal[start..end]);
+        let off = &state.off_diagonal[start..end.min(state.off_diagonal.len())];
+        Self {
+            trace,
+            diagonal,
+            off: sums(off).1,
+        }
+    }
+}
+
 impl Tally {
     pub fn new(tridiagonal: &Tridiagonal, listening: Listening) -> Self {
-        let count = match listening {
-            Listening::Yes => tridiagonal.order().div_ceil(STRETCH),
-            Listening::No => 0,
-        };
-        let mut tally = Self {
+        let order = tridiagonal.order();
+        let mut stretches = Vec::new();
+        if listening == Listening::Yes && order > STRETCH {
+            stretches.extend((0..order.div_ceil(STRETCH)).map(|at| Sums::of(tridiagonal, at)));
+        }
+        Self {
             listening,
-            stretches: vec![Sums::default(); count],
-        };
-        if count > 0 {
-            tally.refresh(tridiagonal, 0, tridiagonal.order() - 1);
-        }
-        tally
-    }
-
-    fn refresh(&mut self, state: &Tridiagonal, first: usize, last: usize) {
-        for stretch in first / STRETCH..=last / STRETCH {
-            let start = stretch * STRETCH;
-            let end = state.order().min(start + STRETCH);
-            let diagonal = &state.diagonal[start..end];
-            let off = &state.off_diagonal[start..end.min(state.off_diagonal.len())];
-            let (trace, squares) = sums(diagonal);
-            self.stretches[stretch] = Sums {
-                trace,
-                diagonal: squares,
-                off: sums(off).1,
-            };
+            stretches,
         }
     }
 
-    pub fn after(&mut self, state: &Tridiagonal, first: usize, last: usize) -> Totals {
-        self.refresh(state, first, last);
-        let sums = self
-            .stretches
+    fn sums_after(&mut self, state: &Tridiagonal, first: usize, last: usize) -> Sums {
+        if self.stretches.is_empty() {
+            return Sums::of(state, 0);
+        }
+        let (from, to) = (first / STRETCH, last / STRETCH);
+        for (at, sums) in self.stretches[from..=to].iter_mut().enumerate() {
+            *sums = Sums::of(state, from + at);
+        }
+        self.stretches
             .iter()
             .fold(Sums::default(), |sum, part| Sums {
                 trace: sum.trace + part.trace,
                 diagonal: sum.diagonal + part.diagonal,
                 off: sum.off + part.off,
-            });
+            })
+    }
+
+    /// Totals after an act on the rows from `first` to `last`.
+    pub fn after(&mut self, state: &Tridiagonal, first: usize, last: usize) -> Totals {
+        let sums = self.sums_after(state, first, last);
         // Squares of very small entries vanish: only then take the scaled norms.
         let (balance, frobenius) = if sums.off > SMALLEST_PLAIN && sums.diagonal > SMALLEST_PLAIN {
             let off = 2.0 * sums.off;

@@ -1,32 +1,37 @@
 //! Stored states of a reduction, from which the ledger replays.
 
-use super::pass::Split;
+use super::pending::Pending;
 use super::run::ReductionRun;
 
 impl ReductionRun {
-    /// What is needed to go on from here: the trailing triangle, packed.
+    /// What is needed to go on from here: the trailing triangle, packed, the
+    /// band before it and the pending pair.
     pub(crate) fn checkpoint(&self) -> Checkpoint {
         let left = self.order - self.done;
-        let packed = |plane: &[f64]| {
-            let mut packed = Vec::new();
+        let (band, pending) = (self.band_planes(), self.pending.stored());
+        let triangles = self.planes() * (left * (left + 1) / 2);
+        let length = triangles + band.iter().map(|plane| plane.len()).sum::<usize>();
+        let mut numbers = Vec::with_capacity(length + pending.len());
+        for plane in [&self.re, &self.im] {
             if !plane.is_empty() {
-                packed.reserve_exact(left * (left + 1) / 2);
                 for col in self.done..self.order {
-                    let column = &plane[col * self.stride..][col..self.order];
-                    packed.extend_from_slice(column);
+                    numbers.extend_from_slice(&plane[col * self.stride..][col..self.order]);
                 }
             }
-            packed
-        };
+        }
+        band.iter()
+            .for_each(|plane| numbers.extend_from_slice(plane));
+        numbers.extend_from_slice(pending);
         Checkpoint {
             order: self.order,
-            re: packed(&self.re),
-            im: packed(&self.im),
-            pending: self.pending.clone(),
-            diagonal: self.diagonal.clone(),
-            off_re: self.off_re.clone(),
-            off_im: self.off_im.clone(),
+            done: self.done,
+            complex: self.is_complex(),
+            numbers,
         }
+    }
+
+    fn band_planes(&self) -> [&Vec<f64>; 3] {
+        [&self.diagonal, &self.off_re, &self.off_im]
     }
 }
 
@@ -35,45 +40,50 @@ impl ReductionRun {
 #[derive(Clone, Debug)]
 pub(crate) struct Checkpoint {
     order: usize,
-    re: Vec<f64>,
-    im: Vec<f64>,
-    pending: Option<(Split, Split)>,
-    diagonal: Vec<f64>,
-    off_re: Vec<f64>,
-    off_im: Vec<f64>,
+    done: usize,
+    complex: bool,
+    /// The triangle by planes, the diagonal, the off-diagonals by planes, and
+    /// the pending pair if there is one.
+    numbers: Vec<f64>,
 }
 
 impl Checkpoint {
     /// A run that goes on from here.
     pub fn resume(&self) -> ReductionRun {
-        let (order, done) = (self.order, self.diagonal.len());
+        let (order, done) = (self.order, self.done);
         let stride = order + order % 2;
-        let complex = !self.im.is_empty();
-        let unpacked = |packed: &[f64]| {
+        let mut rest = &self.numbers[..];
+        let mut next = |length: usize| {
+            let (taken, later) = rest.split_at(length);
+            rest = later;
+            taken
+        };
+        let mut plane = || {
             let mut plane = vec![0.0; stride * stride];
-            let mut rest = packed;
             for col in done..order {
-                let (column, later) = rest.split_at(order - col);
-                plane[col * stride + col..col * stride + order].copy_from_slice(column);
-                rest = later;
+                plane[col * stride + col..col * stride + order].copy_from_slice(next(order - col));
             }
             plane
         };
+        let re = plane();
+        let im = if self.complex { plane() } else { Vec::new() };
+        // Every column done but the last of all has left an off-diagonal.
+        let off = done.min(order.saturating_sub(1));
+        let diagonal = next(done).to_vec();
+        let off_re = next(off).to_vec();
+        let off_im = next(if self.complex { off } else { 0 }).to_vec();
+        let mut pending = Pending::none(stride, self.complex);
+        pending.restore(rest);
         let mut run = ReductionRun {
             order,
             stride,
-            re: unpacked(&self.re),
-            im: if complex {
-                unpacked(&self.im)
-            } else {
-                Vec::new()
-            },
+            re,
+            im,
             done,
-            pending: self.pending.clone(),
-            spare: [Split::zeros(stride, complex), Split::zeros(stride, complex)],
-            diagonal: self.diagonal.clone(),
-            off_re: self.off_re.clone(),
-            off_im: self.off_im.clone(),
+            pending,
+            diagonal,
+            off_re,
+            off_im,
             scalars: vec![0.0; done],
             settled_trace: 0.0,
             settled_squares: 0.0,
@@ -86,6 +96,6 @@ impl Checkpoint {
 
     /// Bytes held.
     pub fn approx_bytes(&self) -> usize {
-        8 * (self.re.len() + self.im.len() + 7 * self.order)
+        8 * self.numbers.len()
     }
 }

@@ -12,6 +12,7 @@ mod error;
 mod gauge;
 mod metric;
 mod pass;
+mod pending;
 mod reflector;
 mod run;
 

@@ -18,19 +18,18 @@
 use crate::matrix::counted::count;
 use crate::matrix::lanes::Lanes;
 
-/// One plane pair of vectors; `im` is empty for real data.
-#[derive(Clone, Debug, Default)]
-pub(super) struct Split {
-    pub re: Vec<f64>,
-    pub im: Vec<f64>,
+/// The planes of a vector; `im` is empty for real data.
+#[derive(Clone, Copy)]
+pub(super) struct Split<'a> {
+    pub re: &'a [f64],
+    pub im: &'a [f64],
 }
 
-impl Split {
-    pub fn zeros(length: usize, complex: bool) -> Self {
-        Self {
-            re: vec![0.0; length],
-            im: vec![0.0; if complex { length } else { 0 }],
-        }
+impl Split<'_> {
+    /// Entry i of a complex vector.
+    #[inline(always)]
+    pub fn at(&self, i: usize) -> (f64, f64) {
+        (self.re[i], self.im[i])
     }
 }
 
@@ -157,7 +156,7 @@ fn real_columns(
     y_head[next] += bottom + dot_right.sum();
 }
 
-/// Both planes of the trailing matrix.
+/// The planes of a matrix or vector, to be written; `im` is empty for real data.
 pub(super) struct Planes<'a> {
     pub re: &'a mut [f64],
     pub im: &'a mut [f64],
@@ -168,10 +167,10 @@ pub(super) fn complex(
     a: Planes<'_>,
     stride: usize,
     first: usize,
-    v: &Split,
-    w: &Split,
-    x: &Split,
-    y: &mut Split,
+    v: Split<'_>,
+    w: Split<'_>,
+    x: Split<'_>,
+    y: &mut Planes<'_>,
 ) {
     y.re[first..].fill(0.0);
     y.im[first..].fill(0.0);
@@ -185,10 +184,16 @@ pub(super) fn complex(
 }
 
 #[inline(always)]
-fn complex_column(a: Planes<'_>, col: usize, v: &Split, w: &Split, x: &Split, y: &mut Split) {
+fn complex_column(
+    a: Planes<'_>,
+    col: usize,
+    v: Split<'_>,
+    w: Split<'_>,
+    x: Split<'_>,
+    y: &mut Planes<'_>,
+) {
     count(32 * (a.re.len() - col));
-    let at = |s: &Split, i: usize| (s.re[i], s.im[i]);
-    let (v_col, w_col, x_col) = (at(v, col), at(w, col), at(x, col));
+    let (v_col, w_col, x_col) = (v.at(col), w.at(col), x.at(col));
     // The diagonal of a Hermitian matrix is real, and is kept so.
     a.re[col] = updated_complex((a.re[col], 0.0), v_col, w_col, v_col, w_col).0;
     let mut dot_re = a.re[col] * x_col.0;
@@ -197,15 +202,15 @@ fn complex_column(a: Planes<'_>, col: usize, v: &Split, w: &Split, x: &Split, y:
     if below % 2 == 1 {
         let entry = updated_complex(
             (a.re[below], a.im[below]),
-            at(v, below),
-            at(w, below),
+            v.at(below),
+            w.at(below),
             v_col,
             w_col,
         );
         (a.re[below], a.im[below]) = entry;
         y.re[below] += entry.0 * x_col.0 - entry.1 * x_col.1;
         y.im[below] += entry.0 * x_col.1 + entry.1 * x_col.0;
-        let x_row = at(x, below);
+        let x_row = x.at(below);
         dot_re += entry.0 * x_row.0 + entry.1 * x_row.1;
         dot_im += entry.0 * x_row.1 - entry.1 * x_row.0;
         below += 1;
@@ -249,8 +254,8 @@ pub(super) fn squares_below_band(
     im: &[f64],
     stride: usize,
     col: usize,
-    v: &Split,
-    w: &Split,
+    v: Split<'_>,
+    w: Split<'_>,
 ) -> f64 {
     let base = col * stride;
     let mut below = col + 2;
@@ -268,9 +273,8 @@ pub(super) fn squares_below_band(
                 0.0,
             )
         } else {
-            let at = |s: &Split, i: usize| (s.re[i], s.im[i]);
             let entry = (re[base + below], im[base + below]);
-            updated_complex(entry, at(v, below), at(w, below), at(v, col), at(w, col))
+            updated_complex(entry, v.at(below), w.at(below), v.at(col), w.at(col))
         };
         sum += entry_re * entry_re + entry_im * entry_im;
         below += 1;

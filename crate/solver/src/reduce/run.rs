@@ -5,6 +5,7 @@
 //! a column, w = τ S v − (τ²/2)(vᴴ S v) v, so that H S H = S − v wᴴ − w vᴴ.
 
 use super::pass::{self, updated, updated_complex, Planes, Split};
+use super::pending::Pending;
 use super::reflector::{self, Formed};
 use crate::matrix::lanes::Lanes;
 use crate::matrix::norms::{norm2, power_of_two};
@@ -26,10 +27,10 @@ pub struct ReductionRun {
     pub(super) re: Vec<f64>,
     pub(super) im: Vec<f64>,
     pub(super) done: usize,
-    pub(super) pending: Option<(Split, Split)>,
-    pub(super) spare: [Split; 2],
+    pub(super) pending: Pending,
     pub(super) diagonal: Vec<f64>,
     pub(super) off_re: Vec<f64>,
+    /// Empty for a real matrix.
     pub(super) off_im: Vec<f64>,
     pub(super) scalars: Vec<f64>,
     /// Trace and squares of the band over the columns done.
@@ -67,11 +68,10 @@ impl ReductionRun {
             re: padded(&matrix.re),
             im: matrix.im.as_ref().map(padded).unwrap_or_default(),
             done: 0,
-            pending: None,
-            spare: [Split::zeros(stride, complex), Split::zeros(stride, complex)],
+            pending: Pending::none(stride, complex),
             diagonal: Vec::with_capacity(order),
             off_re: Vec::with_capacity(order),
-            off_im: Vec::with_capacity(order),
+            off_im: Vec::with_capacity(if complex { order } else { 0 }),
             scalars: Vec::with_capacity(order),
             settled_trace: 0.0,
             settled_squares: 0.0,
@@ -83,9 +83,16 @@ impl ReductionRun {
         let diagonal = self.diagonal[col];
         self.settled_trace += diagonal;
         self.settled_squares += diagonal * diagonal;
-        if let (Some(re), Some(im)) = (self.off_re.get(col), self.off_im.get(col)) {
+        if col < self.off_re.len() {
+            let (re, im) = self.off_diagonal(col);
             self.settled_squares += 2.0 * (re * re + im * im);
         }
+    }
+
+    /// The off-diagonal entry below the diagonal of a column done.
+    fn off_diagonal(&self, col: usize) -> (f64, f64) {
+        let im = self.off_im.get(col).copied().unwrap_or(0.0);
+        (self.off_re[col], im)
     }
 
     pub(super) fn is_complex(&self) -> bool {
@@ -131,7 +138,9 @@ impl ReductionRun {
         };
         let formed = reflector::form(&mut self.re[start..end], im);
         self.off_re.push(formed.image_re);
-        self.off_im.push(formed.image_im);
+        if self.is_complex() {
+            self.off_im.push(formed.image_im);
+        }
         self.scalars.push(formed.scalar);
         self.settle(col);
         if self.done + 1 < order {
@@ -141,88 +150,62 @@ impl ReductionRun {
 
     /// Applies the pending update to one column of the trailing matrix.
     fn update_column(&mut self, col: usize) {
-        let Some((v, w)) = &self.pending else { return };
-        let base = col * self.stride;
+        if !self.pending.any() {
+            return;
+        }
+        let (v, w) = self.pending.pair();
+        let rows = col..self.order;
+        let column = col * self.stride + col..col * self.stride + self.order;
         if self.im.is_empty() {
-            for row in col..self.order {
-                let entry = &mut self.re[base + row];
-                *entry = updated(*entry, v.re[row], w.re[row], v.re[col], w.re[col]);
+            let (v, w) = (&v.re[rows.clone()], &w.re[rows]);
+            for ((entry, v_row), w_row) in self.re[column].iter_mut().zip(v).zip(w) {
+                *entry = updated(*entry, *v_row, *w_row, v[0], w[0]);
             }
             return;
         }
-        let at = |s: &Split, i: usize| (s.re[i], s.im[i]);
-        for row in col..self.order {
-            let entry = (self.re[base + row], self.im[base + row]);
-            let new = updated_complex(entry, at(v, row), at(w, row), at(v, col), at(w, col));
-            (self.re[base + row], self.im[base + row]) = new;
+        let (re, im) = (&mut self.re[column.clone()], &mut self.im[column]);
+        for (k, row) in rows.enumerate() {
+            let entry = (re[k], im[k]);
+            (re[k], im[k]) = updated_complex(entry, v.at(row), w.at(row), v.at(col), w.at(col));
         }
-        self.im[base + col] = 0.0;
+        im[0] = 0.0;
     }
 
     /// Updates the trailing matrix from `first` on, multiplies it by the
     /// reflector in the column before, and leaves the next pair pending.
     fn pass(&mut self, first: usize, formed: Formed) {
-        if formed.scalar == 0.0 && self.pending.is_none() {
+        if formed.scalar == 0.0 && !self.pending.any() {
             return;
         }
-        let [mut x, mut y] = std::mem::take(&mut self.spare);
-        let source = (first - 1) * self.stride + first;
-        let length = self.order - first;
-        let (zero_v, zero_w);
-        let (v, w) = match &self.pending {
-            Some((v, w)) => (v, w),
-            None => {
-                zero_v = Split::zeros(self.stride, self.is_complex());
-                zero_w = zero_v.clone();
-                (&zero_v, &zero_w)
-            }
-        };
-        x.re[first..first + length].copy_from_slice(&self.re[source..source + length]);
+        let ((v, w), (x, mut y)) = self.pending.pair_and_next();
+        let source =
+            (first - 1) * self.stride + first..first * self.stride - self.stride + self.order;
+        let target = first..self.order;
         let tau = formed.scalar;
+        x.re[target.clone()].copy_from_slice(&self.re[source.clone()]);
         if self.im.is_empty() {
-            pass::real(
-                &mut self.re,
-                self.stride,
-                first,
-                &v.re,
-                &w.re,
-                &x.re,
-                &mut y.re,
-            );
+            pass::real(&mut self.re, self.stride, first, v.re, w.re, x.re, y.re);
             let inner = dot(&x.re[first..], &y.re[first..]);
             let share = 0.5 * tau * tau * inner;
-            for (y, x) in y.re[first..].iter_mut().zip(&x.re[first..]) {
-                *y = tau * *y - share * x;
-            }
+            scale_and_subtract(tau, &mut y.re[first..], share, &x.re[first..]);
         } else {
-            x.im[first..first + length].copy_from_slice(&self.im[source..source + length]);
+            x.im[target].copy_from_slice(&self.im[source]);
             let planes = Planes {
                 re: &mut self.re,
                 im: &mut self.im,
             };
-            pass::complex(planes, self.stride, first, v, w, &x, &mut y);
+            let x = Split { re: x.re, im: x.im };
+            pass::complex(planes, self.stride, first, v, w, x, &mut y);
             // vᴴ S v is real for Hermitian S.
             let inner = dot(&x.re[first..], &y.re[first..]) + dot(&x.im[first..], &y.im[first..]);
             let share = 0.5 * tau * tau * inner;
-            for (y, x) in y.re[first..].iter_mut().zip(&x.re[first..]) {
-                *y = tau * *y - share * x;
-            }
-            for (y, x) in y.im[first..].iter_mut().zip(&x.im[first..]) {
-                *y = tau * *y - share * x;
-            }
+            scale_and_subtract(tau, &mut y.re[first..], share, &x.re[first..]);
+            scale_and_subtract(tau, &mut y.im[first..], share, &x.im[first..]);
         }
-        let old = self.pending.take();
         if tau != 0.0 {
-            self.pending = Some((x, y));
-            self.spare = match old {
-                Some((v, w)) => [v, w],
-                None => [
-                    Split::zeros(self.stride, !self.im.is_empty()),
-                    Split::zeros(self.stride, !self.im.is_empty()),
-                ],
-            };
+            self.pending.advance();
         } else {
-            self.spare = [x, y];
+            self.pending.clear();
         }
     }
 
@@ -241,7 +224,7 @@ impl ReductionRun {
                 &[]
             },
             scalar,
-            image: (self.off_re[col], self.off_im[col]),
+            image: self.off_diagonal(col),
         })
     }
 
@@ -249,26 +232,13 @@ impl ReductionRun {
     /// pending update applied.
     fn trailing(&self, row: usize, col: usize) -> (f64, f64) {
         let at = col * self.stride + row;
+        let (v, w) = self.pending.pair();
         if self.im.is_empty() {
-            let entry = self.re[at];
-            let new = match &self.pending {
-                Some((v, w)) => updated(entry, v.re[row], w.re[row], v.re[col], w.re[col]),
-                None => entry,
-            };
+            let new = updated(self.re[at], v.re[row], w.re[row], v.re[col], w.re[col]);
             return (new, 0.0);
         }
         let entry = (self.re[at], if row == col { 0.0 } else { self.im[at] });
-        let Some((v, w)) = &self.pending else {
-            return entry;
-        };
-        let pick = |s: &Split, i: usize| (s.re[i], s.im[i]);
-        let (re, im) = updated_complex(
-            entry,
-            pick(v, row),
-            pick(w, row),
-            pick(v, col),
-            pick(w, col),
-        );
+        let (re, im) = updated_complex(entry, v.at(row), w.at(row), v.at(col), w.at(col));
         (re, if row == col { 0.0 } else { im })
     }
 
@@ -285,8 +255,8 @@ impl ReductionRun {
         for (col, entry) in self.diagonal.iter().enumerate() {
             put(col, col, (*entry, 0.0));
         }
-        for (col, entry) in self.off_re.iter().zip(&self.off_im).enumerate() {
-            put(col + 1, col, (*entry.0, *entry.1));
+        for col in 0..self.off_re.len() {
+            put(col + 1, col, self.off_diagonal(col));
         }
         for col in self.done..self.order {
             for row in col..self.order {
@@ -304,34 +274,31 @@ impl ReductionRun {
     /// band, as they stand. Cost: O(n).
     pub(crate) fn band(&self) -> (f64, f64) {
         let (mut trace, mut squares) = (self.settled_trace, self.settled_squares);
-        let plane = &self.re[..];
-        match &self.pending {
-            Some((v, w)) if self.im.is_empty() => {
-                let (v, w) = (&v.re[..self.stride], &w.re[..self.stride]);
-                for col in self.done..self.order {
-                    let at = col * self.stride + col;
-                    let diagonal = updated(plane[at], v[col], w[col], v[col], w[col]);
-                    // With an odd order the last row has a neighbour too: zero.
-                    let below = if col + 1 < self.stride {
-                        updated(plane[at + 1], v[col + 1], w[col + 1], v[col], w[col])
-                    } else {
-                        0.0
-                    };
-                    trace += diagonal;
-                    squares += diagonal * diagonal + 2.0 * (below * below);
-                }
+        if self.im.is_empty() {
+            let (v, w) = self.pending.pair();
+            let (plane, v, w) = (&self.re[..], &v.re[..self.stride], &w.re[..self.stride]);
+            for col in self.done..self.order {
+                let at = col * self.stride + col;
+                let diagonal = updated(plane[at], v[col], w[col], v[col], w[col]);
+                // With an odd order the last row has a neighbour too: zero.
+                let below = if col + 1 < self.stride {
+                    updated(plane[at + 1], v[col + 1], w[col + 1], v[col], w[col])
+                } else {
+                    0.0
+                };
+                trace += diagonal;
+                squares += diagonal * diagonal + 2.0 * (below * below);
             }
-            _ => {
-                for col in self.done..self.order {
-                    let diagonal = self.trailing(col, col).0;
-                    let (re, im) = if col + 1 < self.order {
-                        self.trailing(col + 1, col)
-                    } else {
-                        (0.0, 0.0)
-                    };
-                    trace += diagonal;
-                    squares += diagonal * diagonal + 2.0 * (re * re + im * im);
-                }
+        } else {
+            for col in self.done..self.order {
+                let diagonal = self.trailing(col, col).0;
+                let (re, im) = if col + 1 < self.order {
+                    self.trailing(col + 1, col)
+                } else {
+                    (0.0, 0.0)
+                };
+                trace += diagonal;
+                squares += diagonal * diagonal + 2.0 * (re * re + im * im);
             }
         }
         let norm = if squares > SMALLEST_PLAIN {
@@ -345,8 +312,9 @@ impl ReductionRun {
     /// The band's entries, each off-diagonal part twice.
     fn band_parts(&self) -> Vec<f64> {
         let mut parts = self.diagonal.clone();
-        for (re, im) in self.off_re.iter().zip(&self.off_im) {
-            parts.extend([*re, *re, *im, *im]);
+        for col in 0..self.off_re.len() {
+            let (re, im) = self.off_diagonal(col);
+            parts.extend([re, re, im, im]);
         }
         for col in self.done..self.order {
             parts.push(self.trailing(col, col).0);
@@ -361,14 +329,7 @@ impl ReductionRun {
     /// Frobenius norm outside the tridiagonal band, summed entry by entry.
     /// Cost: 6 operations an entry (18 complex) of the trailing triangle.
     pub(crate) fn norm_outside_band(&self) -> f64 {
-        let zeros;
-        let (v, w) = match &self.pending {
-            Some((v, w)) => (v, w),
-            None => {
-                zeros = Split::zeros(self.stride, self.is_complex());
-                (&zeros, &zeros)
-            }
-        };
+        let (v, w) = self.pending.pair();
         let squares = (self.done..self.order)
             .map(|col| pass::squares_below_band(&self.re, &self.im, self.stride, col, v, w))
             .fold(0.0, |sum, square| sum + square);
@@ -408,6 +369,14 @@ pub(crate) struct LastReflector<'a> {
     pub im: &'a [f64],
     pub scalar: f64,
     pub image: (f64, f64),
+}
+
+/// y ← τ y − share · x.
+#[inline(always)]
+fn scale_and_subtract(tau: f64, y: &mut [f64], share: f64, x: &[f64]) {
+    for (y, x) in y.iter_mut().zip(x) {
+        *y = tau * *y - share * x;
+    }
 }
 
 /// Inner product in four interleaved sums, added in a fixed order.
