@@ -18,6 +18,7 @@
 )]
 
 pub mod control;
+pub mod eft;
 pub mod iterate;
 pub mod ledger;
 pub mod matrix;

@@ -2,11 +2,13 @@
 //! transformations and upper bounds.
 
 pub mod dyadic;
-pub mod eft;
+#[cfg(test)]
+mod eft_tests;
 pub mod exact;
 pub mod figure;
 pub mod upper;
 
 pub use dyadic::{Dyadic, Toward};
+pub use eigenledger_solver::eft;
 pub use exact::ExactReal;
 pub use upper::Upper;

@@ -152,16 +152,22 @@ pub fn square_sum_up(terms: impl Iterator<Item = f64>) -> Upper {
         seen |= x != 0.0;
         count += 1;
     }
-    let lost = if seen {
-        Upper::of(count as f64).times(Upper::of(f64::from_bits(1)))
-    } else {
+    bound_square_sum(sum, count, !seen)
+}
+
+/// A bound on an exact sum of `count` squares from its computed value, as
+/// [`square_sum_up`] has it; `is_zero` says that every square is of a zero.
+pub fn bound_square_sum(computed: f64, count: usize, is_zero: bool) -> Upper {
+    let lost = if is_zero {
         Upper::ZERO
+    } else {
+        Upper::of(count as f64).times(Upper::of(f64::from_bits(1)))
     };
-    stretched(Upper::of(sum), count).plus(lost)
+    stretched(Upper::of(computed), count).plus(lost)
 }
 
 /// sum / (1 − k·u), for a computed sum that passed through k roundings.
-fn stretched(sum: Upper, roundings: usize) -> Upper {
+pub fn stretched(sum: Upper, roundings: usize) -> Upper {
     sum.over((1.0 - roundings as f64 * UNIT).next_down())
 }
 

@@ -5,6 +5,7 @@
 
 use nalgebra::DMatrix;
 
+use crate::matrix::passes::{self, column, column_mut};
 use crate::matrix::Dense;
 use crate::num::eft::{two_product, two_sum};
 use crate::num::upper::{gamma, square_sum_up};
@@ -19,15 +20,11 @@ pub(super) struct Accurate {
     pub loss: Vec<Upper>,
 }
 
-/// Applies an operation to each pair of entries, plane by plane.
-pub(super) fn zip_planes(a: &mut Dense, b: &mut Dense, operation: impl Fn(&mut f64, &mut f64)) {
-    for (x, y) in a.re.iter_mut().zip(b.re.iter_mut()) {
-        operation(x, y);
-    }
+/// Applies an entrywise operation, plane by plane.
+pub(super) fn zip_planes(a: &mut Dense, b: &mut Dense, operation: fn(&mut [f64], &mut [f64])) {
+    operation(a.re.as_mut_slice(), b.re.as_mut_slice());
     if let (Some(a), Some(b)) = (&mut a.im, &mut b.im) {
-        for (x, y) in a.iter_mut().zip(b.iter_mut()) {
-            operation(x, y);
-        }
+        operation(a.as_mut_slice(), b.as_mut_slice());
     }
 }
 
@@ -37,19 +34,7 @@ pub(super) fn absorb(high: &mut Dense, low: &mut Dense, term: &Dense, spills: &m
     let mut squares = vec![Upper::ZERO; spills.len()];
     let mut planes = |high: &mut DMatrix<f64>, low: &mut DMatrix<f64>, term: &DMatrix<f64>| {
         for (k, square) in squares.iter_mut().enumerate() {
-            let mut errors = 0.0;
-            let terms = term.column(k);
-            let columns = high
-                .column_mut(k)
-                .into_iter()
-                .zip(low.column_mut(k))
-                .zip(terms.iter());
-            for ((h, l), t) in columns {
-                let (sum, error) = two_sum(*h, *t);
-                *h = sum;
-                *l += error;
-                errors += error * error;
-            }
+            let errors = passes::absorb(column_mut(high, k), column_mut(low, k), column(term, k));
             *square = square.plus(stretched_squares(errors, term.nrows()));
         }
     };
@@ -81,17 +66,11 @@ pub(super) fn subtract_scaled(product: &mut Accurate, base: &Accurate, values: &
                          low: &mut DMatrix<f64>,
                          base: &DMatrix<f64>,
                          base_low: &DMatrix<f64>| {
-            let mut sizes = 0.0f64;
-            for i in 0..high.nrows() {
-                let (p, e) = two_product(value, base[(i, k)]);
-                let (sum, error) = two_sum(high[(i, k)], -p);
-                let small = value * base_low[(i, k)];
-                let before = low[(i, k)];
-                high[(i, k)] = sum;
-                low[(i, k)] = ((before + error) - e) - small;
-                let size = before.abs() + error.abs() + e.abs() + small.abs();
-                sizes += size * size;
-            }
+            let sizes = passes::subtract_scaled(
+                (column_mut(high, k), column_mut(low, k)),
+                (column(base, k), column(base_low, k)),
+                value,
+            );
             spill = spill.plus(stretched_squares(sizes, 4 * high.nrows()).sqrt());
         };
         plane(
@@ -129,9 +108,7 @@ impl Accurate {
 
     /// Makes high the double nearest to high + low, entry by entry.
     pub fn renormalise(&mut self) {
-        zip_planes(&mut self.high, &mut self.low, |h, l| {
-            (*h, *l) = two_sum(*h, *l)
-        });
+        zip_planes(&mut self.high, &mut self.low, passes::renormalise);
     }
 }
 

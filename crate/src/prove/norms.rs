@@ -7,9 +7,12 @@
 //! numbers bound the norm of |A|, the matrix of moduli, so one bound serves
 //! both in the rounding analysis.
 
+use nalgebra::DMatrix;
+
 use crate::matrix::kernels::DEPTH;
+use crate::matrix::passes::{column, column_sums, complex_column_sums, square_sum};
 use crate::matrix::Dense;
-use crate::num::upper::{gamma, square_sum_up, sum_up};
+use crate::num::upper::{bound_square_sum, gamma, square_sum_up, stretched};
 use crate::num::Upper;
 
 /// Bounds on the norms of a matrix.
@@ -30,29 +33,20 @@ impl Norms {
         let mut columns = Vec::with_capacity(cols);
         let mut largest_column = Upper::ZERO;
         let mut row_sums = vec![0.0; rows];
+        let mut is_zero = true;
         for k in 0..cols {
-            let re = matrix.re.column(k);
-            let im = matrix.im.as_ref().map(|im| im.column(k));
-            let squares = match &im {
-                None => square_sum_up(re.iter().copied()),
-                Some(im) => square_sum_up(re.iter().chain(im.iter()).copied()),
+            let re = column(&matrix.re, k);
+            let (sums, parts) = match &matrix.im {
+                None => (column_sums(re, &mut row_sums), 1),
+                Some(im) => (complex_column_sums(re, column(im, k), &mut row_sums), 2),
             };
-            columns.push(squares.sqrt());
-            let moduli = |i: usize| match &im {
-                None => re[i].abs(),
-                Some(im) => modulus_up(re[i], im[i]),
-            };
-            largest_column = largest_column.most(sum_up((0..rows).map(moduli)));
-            for (i, sum) in row_sums.iter_mut().enumerate() {
-                *sum += moduli(i);
-            }
+            is_zero &= sums.is_zero;
+            columns.push(bound_square_sum(sums.squares, parts * rows, sums.is_zero).sqrt());
+            largest_column = largest_column.most(bound_moduli(sums.moduli, rows, sums.is_zero));
         }
-        // A row sum passed through `cols` additions.
-        let stretch = Upper::of(1.0).over(Upper::of(cols as f64 * f64::EPSILON).one_minus());
-        let largest_row = row_sums
-            .iter()
-            .fold(Upper::ZERO, |most, &sum| most.most(Upper::of(sum)))
-            .times(stretch);
+        let largest_row = row_sums.iter().fold(Upper::ZERO, |most, &sum| {
+            most.most(bound_moduli(sum, cols, is_zero))
+        });
         let frobenius = square_sum_up(columns.iter().map(|norm| norm.get())).sqrt();
         let spectral = frobenius.least(largest_column.times(largest_row).sqrt());
         Self {
@@ -68,17 +62,36 @@ impl Norms {
 pub(super) fn column_norms(matrix: &Dense) -> (Vec<Upper>, Upper) {
     let columns: Vec<Upper> = (0..matrix.cols())
         .map(|k| {
-            let re = square_sum_up(matrix.re.column(k).iter().copied());
-            let im = matrix
-                .im
-                .as_ref()
-                .map(|im| square_sum_up(im.column(k).iter().copied()));
-            re.plus(im.unwrap_or(Upper::ZERO)).sqrt()
+            let re = column_square(&matrix.re, k);
+            match &matrix.im {
+                None => re.sqrt(),
+                Some(im) => re.plus(column_square(im, k)).sqrt(),
+            }
         })
         .collect();
     let frobenius = square_sum_up(columns.iter().map(|norm| norm.get())).sqrt();
     (columns, frobenius)
 }
+
+/// A bound on the sum of squares of column k of a plane.
+pub(super) fn column_square(plane: &DMatrix<f64>, k: usize) -> Upper {
+    let (sum, is_zero) = square_sum(column(plane, k));
+    bound_square_sum(sum, plane.nrows(), is_zero)
+}
+
+/// A bound on a sum of `count` moduli from its computed value: `count` additions
+/// and the two roundings of each modulus, and 2^−537 that underflow may take
+/// from one.
+fn bound_moduli(computed: f64, count: usize, is_zero: bool) -> Upper {
+    if is_zero {
+        return Upper::ZERO;
+    }
+    let lost = Upper::of(count as f64).times(Upper::of(LOST_OF_A_MODULUS));
+    stretched(Upper::of(computed), count + 2).plus(lost)
+}
+
+/// 2^−537.
+const LOST_OF_A_MODULUS: f64 = f64::from_bits((1023 - 537) << 52);
 
 /// A double not below √(re² + im²).
 pub(super) fn modulus_up(re: f64, im: f64) -> f64 {

@@ -19,13 +19,14 @@
 //! Weinstein). ‖L⁻¹r‖² = r*M⁻¹r with M⁻¹ = X(XᴴMX)⁻¹Xᴴ, so that
 //! ‖L⁻¹r‖ ≤ ‖X‖₂‖r‖₂/√(1 − φ); for M = I it is ‖r‖₂ itself.
 
+use crate::matrix::passes::{self, column, column_mut};
 use crate::matrix::Dense;
 use crate::num::upper::{square_sum_up, UNIT};
 use crate::num::Upper;
 use nalgebra::DMatrix;
 
 use super::frame::Frame;
-use super::norms::{Norms, Rounding};
+use super::norms::{column_square, Norms, Rounding};
 use super::products::{hermitian_gram, watched_product, Cancelled, Watch};
 
 /// What the linear statements need.
@@ -218,20 +219,17 @@ pub(super) fn root_sum_square(bounds: &[Upper]) -> Upper {
 
 /// ≥ the 2-norm of column k.
 pub(super) fn column_norm(matrix: &Dense, k: usize) -> Upper {
-    let re = matrix.re.column(k);
+    let re = column_square(&matrix.re, k);
     match &matrix.im {
-        None => square_sum_up(re.iter().copied()),
-        Some(im) => square_sum_up(re.iter().copied().chain(im.column(k).iter().copied())),
+        None => re.sqrt(),
+        Some(im) => re.plus(column_square(im, k)).sqrt(),
     }
-    .sqrt()
 }
 
 /// targetₖ ← targetₖ − value·sourceₖ; returns a bound on ‖fl(value·sourceₖ)‖₂.
 fn subtract_multiple(target: &mut Dense, source: &Dense, k: usize, value: f64) -> Upper {
     let subtract = |target: &mut DMatrix<f64>, source: &DMatrix<f64>| {
-        for (t, s) in target.column_mut(k).iter_mut().zip(source.column(k).iter()) {
-            *t -= value * s;
-        }
+        passes::subtract_multiple(column_mut(target, k), value, column(source, k));
     };
     subtract(&mut target.re, &source.re);
     if let (Some(target), Some(source)) = (&mut target.im, &source.im) {

@@ -15,8 +15,8 @@
 
 use nalgebra::DMatrix;
 
+use crate::matrix::passes::{self, column, column_mut};
 use crate::matrix::Dense;
-use crate::num::eft::two_sum;
 use crate::num::upper::{gamma, UNIT};
 use crate::num::Upper;
 
@@ -62,9 +62,17 @@ fn line_sizes(matrix: &Dense, lines: Lines) -> Vec<Option<i32>> {
     let mut most = vec![0.0f64; count];
     for plane in std::iter::once(&matrix.re).chain(matrix.im.as_ref()) {
         for j in 0..plane.ncols() {
-            for (i, x) in plane.column(j).iter().enumerate() {
-                let line = if lines == Lines::Rows { i } else { j };
-                most[line] = most[line].max(x.abs());
+            match lines {
+                Lines::Rows => passes::raise(&mut most, column(plane, j)),
+                Lines::Columns => {
+                    most[j] = column(plane, j).iter().fold(most[j], |most, x| {
+                        if x.abs() > most {
+                            x.abs()
+                        } else {
+                            most
+                        }
+                    });
+                }
             }
         }
     }
@@ -73,11 +81,10 @@ fn line_sizes(matrix: &Dense, lines: Lines) -> Vec<Option<i32>> {
         .collect()
 }
 
-/// The part of x on the grid of 2^(size − bits), |x| ≤ 2^size: adding and
-/// subtracting a constant whose last place is that grid rounds x to it.
-fn on_grid(x: f64, size: i32, bits: i32) -> f64 {
-    let constant = 1.5 * power(size + 52 - bits);
-    (x + constant) - constant
+/// Adding and subtracting this constant rounds |x| ≤ 2^size to the grid of
+/// 2^(size − bits), its last place. A line of zeros needs none.
+fn grid_constant(size: Option<i32>, bits: i32) -> f64 {
+    size.map_or(0.0, |size| 1.5 * power(size + 52 - bits))
 }
 
 /// 2^exponent, for exponents of normal doubles (smaller ones give the least).
@@ -87,16 +94,17 @@ fn power(exponent: i32) -> f64 {
 
 /// Takes the slice of `bits` bits off `matrix`, leaving the remainder there.
 fn take_slice(matrix: &mut Dense, sizes: &[Option<i32>], lines: Lines, bits: i32) -> Dense {
+    let constants: Vec<f64> = sizes
+        .iter()
+        .map(|&size| grid_constant(size, bits))
+        .collect();
     let cut = |plane: &mut DMatrix<f64>| {
         let mut slice = DMatrix::zeros(plane.nrows(), plane.ncols());
         for j in 0..plane.ncols() {
-            let columns = plane.column_mut(j).into_iter().zip(slice.column_mut(j));
-            for (i, (x, part)) in columns.enumerate() {
-                let line = if lines == Lines::Rows { i } else { j };
-                if let Some(size) = sizes[line] {
-                    *part = on_grid(*x, size, bits);
-                    *x -= *part;
-                }
+            let (x, part) = (column_mut(plane, j), column_mut(&mut slice, j));
+            match lines {
+                Lines::Rows => passes::cut_rows(x, part, &constants),
+                Lines::Columns => passes::cut(x, part, constants[j]),
             }
         }
         slice
@@ -135,7 +143,7 @@ impl Left {
             Lines::Rows,
             bits,
         );
-        zip_planes(&mut remainder, &mut low, |x, y| (*x, *y) = two_sum(*x, *y));
+        zip_planes(&mut remainder, &mut low, passes::renormalise);
         // The low part may have carried the remainder just past its bound: one bit more.
         let third = take_slice(
             &mut remainder,
@@ -143,7 +151,7 @@ impl Left {
             Lines::Rows,
             bits,
         );
-        zip_planes(&mut remainder, &mut low, |x, y| *x += *y);
+        zip_planes(&mut remainder, &mut low, |x, y| passes::add(x, y));
         let rounding = Upper::of(UNIT).times(column_norms(&remainder).1);
         Self {
             slices: [first, second, third],
@@ -307,7 +315,11 @@ mod tests {
         ] {
             let high = random(order, complex, &mut stream, spread);
             let mut low = random(order, complex, &mut stream, false);
-            zip_planes(&mut low, &mut high.clone(), |l, h| *l *= h.abs() * UNIT);
+            zip_planes(&mut low, &mut high.clone(), |low, high| {
+                for (l, h) in low.iter_mut().zip(high) {
+                    *l *= h.abs() * UNIT;
+                }
+            });
             let x = random(order, complex, &mut stream, false);
             let left = Left::new(&high, low.clone(), Upper::ZERO);
             let right = Right::new(&x);

@@ -80,7 +80,7 @@ test('a binary file: a sentence, and the problem stays', async () => {
   const { page, assertQuiet } = await openPage(browser);
   const example = await solved(page);
   const bytes = Buffer.from(Array.from({ length: 4096 }, (_, index) => (index * 197 + 31) % 256));
-  await page.locator('input[type=file]').setInputFiles({ name: 'dump.bin', mimeType: 'application/octet-stream', buffer: bytes });
+  await page.getByRole('region', { name: 'Problem' }).locator('input[type=file]').setInputFiles({ name: 'dump.bin', mimeType: 'application/octet-stream', buffer: bytes });
   assertClear(await sentences(page), 'a binary file');
   assert.equal(await fingerprint(page), example);
   assertQuiet();

@@ -6,6 +6,7 @@ pub mod kernels;
 pub mod lanes;
 pub mod norms;
 mod packing;
+pub mod passes;
 mod tile;
 
 pub use dense::Dense;
