@@ -24,16 +24,35 @@ struct Sums {
 const STRETCH: usize = 32;
 
 impl Sums {
-    /// Over the stretch at position `stretch`.
+    /// Over the stretch at position `stretch`, every sum in two lanes. The
+    /// three sums do not wait for each other.
     fn of(state: &Tridiagonal, stretch: usize) -> Self {
         let start = stretch * STRETCH;
         let end = state.order().min(start + STRETCH);
-        let (trace, diagonal) = sums(&state.diagonal[start..end]);
+        let (diagonal, last) = state.diagonal[start..end].as_chunks::<2>();
         let off = &state.off_diagonal[start..end.min(state.off_diagonal.len())];
+        let (off, last_off) = off.as_chunks::<2>();
+        let zero = Lanes::splat(0.0);
+        let (mut trace, mut squares, mut off_squares) = (zero, zero, zero);
+        let mut add = |x: &[f64; 2]| {
+            let x = Lanes::load(x);
+            trace = trace + x;
+            squares = squares + x * x;
+        };
+        let (beside, alone) = diagonal.split_at(off.len());
+        for (x, y) in beside.iter().zip(off) {
+            add(x);
+            let y = Lanes::load(y);
+            off_squares = off_squares + y * y;
+        }
+        // The off-diagonals of the last stretch are one fewer.
+        alone.iter().for_each(add);
+        let last = last.first().copied().unwrap_or(0.0);
+        let last_off = last_off.first().copied().unwrap_or(0.0);
         Self {
-            trace,
-            diagonal,
-            off: sums(off).1,
+            trace: trace.sum() + last,
+            diagonal: squares.sum() + last * last,
+            off: off_squares.sum() + last_off * last_off,
         }
     }
 }
@@ -90,25 +109,3 @@ impl Tally {
 
 /// Below this a sum of squares may have lost terms to underflow (2⁻⁹⁰⁰).
 const SMALLEST_PLAIN: f64 = crate::matrix::norms::power_of_two(-900);
-
-/// Σx and Σx², each in four interleaved sums added in a fixed order: one sum
-/// would wait for itself.
-fn sums(values: &[f64]) -> (f64, f64) {
-    let (pairs, rest) = values.as_chunks::<2>();
-    let (fours, pair) = pairs.as_chunks::<2>();
-    let zero = Lanes::splat(0.0);
-    let (mut even, mut odd) = ((zero, zero), (zero, zero));
-    let add = |sums: (Lanes, Lanes), x: Lanes| (sums.0 + x, sums.1 + x * x);
-    for [first, second] in fours {
-        even = add(even, Lanes::load(first));
-        odd = add(odd, Lanes::load(second));
-    }
-    if let [pair] = pair {
-        even = add(even, Lanes::load(pair));
-    }
-    let last = rest.first().copied().unwrap_or(0.0);
-    (
-        (even.0 + odd.0).sum() + last,
-        (even.1 + odd.1).sum() + last * last,
-    )
-}

@@ -7,6 +7,7 @@
 
 use super::{Event, Listening, Recorder, Totals};
 use crate::iterate::{Deflation, SweepStep};
+use crate::matrix::short;
 use crate::reduce::{Checkpoint, ReductionRun, Tridiagonal};
 
 /// A run of numbers in the ledger's pool; see [`Ledger::numbers`].
@@ -114,8 +115,8 @@ pub struct Ledger {
     pool: Vec<f64>,
     /// States of the reduction, each with the number of entries before it.
     pub(super) reductions: Vec<(usize, Checkpoint)>,
-    /// States of the iteration, each with the number of entries before it.
-    pub(super) tridiagonals: Vec<(usize, Tridiagonal)>,
+    /// States of the iteration, diagonal before off-diagonal, each with the number of entries before it.
+    pub(super) tridiagonals: Vec<(usize, Span)>,
     /// Where in the pool each off-diagonal's present value is.
     off_diagonal_at: Vec<usize>,
     sweeps: usize,
@@ -175,13 +176,11 @@ impl Ledger {
 
     /// Bytes held, for the memory figures.
     pub fn approx_bytes(&self) -> usize {
-        let states: usize = self
-            .reductions
-            .iter()
-            .map(|(_, run)| run.approx_bytes())
-            .sum();
-        let bands: usize = self.tridiagonals.iter().map(|(_, t)| 16 * t.order()).sum();
-        8 * self.pool.capacity() + self.entries.capacity() * size_of::<Entry>() + states + bands
+        8 * self.pool.capacity() + self.entries.capacity() * size_of::<Entry>()
+    }
+
+    pub(super) fn pool(&self) -> &[f64] {
+        &self.pool
     }
 
     fn keep(&mut self, numbers: impl Iterator<Item = f64>) -> Span {
@@ -195,7 +194,7 @@ impl Ledger {
 
     fn copy(&mut self, numbers: &[f64]) -> Span {
         let start = self.pool.len();
-        self.pool.extend_from_slice(numbers);
+        short::append(&mut self.pool, numbers);
         Span {
             start,
             length: numbers.len(),
@@ -203,17 +202,33 @@ impl Ledger {
     }
 
     /// Room for a run of this order, so that nothing is moved while it goes on:
-    /// n²/2 numbers a plane for the reflectors, and n² for the sweeps, of which
-    /// there are about 2·n over blocks of n/2 rows.
+    /// n²/2 numbers a plane for the reflectors, the states of the reduction, n²
+    /// for the sweeps, of which there are about 2·n over blocks of n/2 rows, and
+    /// the states between them.
     fn begin(&mut self, run: &ReductionRun) {
         let (order, planes) = (run.order(), run.planes());
         self.order = order;
         self.entries.reserve(4 * order);
-        self.pool.reserve((planes + 2) * order * (order + 1) / 2);
+        let shares = if order < SMALLEST_CHECKPOINTED {
+            1
+        } else {
+            REDUCTION_CHECKPOINTS
+        };
+        let states = Checkpoint::numbers_of_all(order, planes, shares);
+        let bands = 2 * order * (1 + 2 * order / SWEEPS_A_CHECKPOINT);
+        self.pool
+            .reserve((planes + 2) * order * (order + 1) / 2 + states + bands);
     }
 
     fn checkpoint_reduction(&mut self, run: &ReductionRun) {
-        self.reductions.push((self.entries.len(), run.checkpoint()));
+        let checkpoint = run.checkpoint(&mut self.pool);
+        self.reductions.push((self.entries.len(), checkpoint));
+    }
+
+    fn checkpoint_iteration(&mut self, tridiagonal: &Tridiagonal) {
+        let mut stored = self.copy(&tridiagonal.diagonal);
+        stored.length += self.copy(&tridiagonal.off_diagonal).length;
+        self.tridiagonals.push((self.entries.len(), stored));
     }
 
     fn sweep(&mut self, step: SweepStep, tridiagonal: &Tridiagonal) -> Act {
@@ -331,16 +346,14 @@ impl Recorder for Ledger {
                     act: Act::Phases { re, im },
                     totals,
                 });
-                self.tridiagonals
-                    .push((self.entries.len(), tridiagonal.clone()));
+                self.checkpoint_iteration(tridiagonal);
                 return;
             }
             Event::Sweep { step, tridiagonal } => {
                 let act = self.sweep(step, tridiagonal);
                 self.entries.push(Entry { act, totals });
                 if self.sweeps.is_multiple_of(SWEEPS_A_CHECKPOINT) {
-                    self.tridiagonals
-                        .push((self.entries.len(), tridiagonal.clone()));
+                    self.checkpoint_iteration(tridiagonal);
                 }
                 return;
             }

@@ -69,8 +69,12 @@ impl Ledger {
             return Err(ReplayError::NoSuchEntry { entry, entries });
         }
         let wanted = entry + 1;
-        if let Some((after, tridiagonal)) = nearest(&self.tridiagonals, wanted) {
-            let mut state = tridiagonal.clone();
+        if let Some((after, stored)) = nearest(&self.tridiagonals, wanted) {
+            let (diagonal, off_diagonal) = self.numbers(*stored).split_at(self.order());
+            let mut state = Tridiagonal {
+                diagonal: diagonal.to_vec(),
+                off_diagonal: off_diagonal.to_vec(),
+            };
             for entry in &self.entries()[*after..wanted] {
                 match &entry.act {
                     Act::Sweep { step, .. } => iterate::repeat(&mut state, *step),
@@ -83,7 +87,7 @@ impl Ledger {
         let Some((after, run)) = nearest(&self.reductions, wanted) else {
             return Err(ReplayError::BeforeReduction { entry });
         };
-        let mut run = run.resume();
+        let mut run = run.resume(self.pool());
         for _ in *after..wanted {
             run.step();
         }

@@ -7,6 +7,7 @@ pub mod lanes;
 pub mod norms;
 mod packing;
 pub mod passes;
+pub(crate) mod short;
 mod tile;
 
 pub use dense::Dense;

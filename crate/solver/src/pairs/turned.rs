@@ -11,7 +11,7 @@
 
 use crate::iterate::Rotation;
 use crate::matrix::lanes::Lanes;
-use crate::matrix::Dense;
+use crate::matrix::{short, Dense};
 use crate::reduce::{dot, Reduction, Reflectors};
 use nalgebra::DMatrix;
 
@@ -109,7 +109,7 @@ impl Basis {
             let mut entries = Vec::with_capacity(self.order * self.order);
             for position in positions {
                 let at = position * self.stride + start;
-                entries.extend_from_slice(&self.numbers[at..at + self.order]);
+                short::append(&mut entries, &self.numbers[at..at + self.order]);
             }
             DMatrix::from_vec(self.order, self.order, entries)
         };

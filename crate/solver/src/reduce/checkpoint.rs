@@ -2,31 +2,30 @@
 
 use super::pending::Pending;
 use super::run::ReductionRun;
+use crate::matrix::short;
+use std::ops::Range;
 
 impl ReductionRun {
-    /// What is needed to go on from here: the trailing triangle, packed, the
-    /// band before it and the pending pair.
-    pub(crate) fn checkpoint(&self) -> Checkpoint {
-        let left = self.order - self.done;
-        let (band, pending) = (self.band_planes(), self.pending.stored());
-        let triangles = self.planes() * (left * (left + 1) / 2);
-        let length = triangles + band.iter().map(|plane| plane.len()).sum::<usize>();
-        let mut numbers = Vec::with_capacity(length + pending.len());
+    /// What is needed to go on from here, appended to `pool`: the trailing
+    /// triangle, packed, the band before it and the pending pair.
+    pub(crate) fn checkpoint(&self, pool: &mut Vec<f64>) -> Checkpoint {
+        let start = pool.len();
         for plane in [&self.re, &self.im] {
             if !plane.is_empty() {
                 for col in self.done..self.order {
-                    numbers.extend_from_slice(&plane[col * self.stride..][col..self.order]);
+                    short::append(pool, &plane[col * self.stride..][col..self.order]);
                 }
             }
         }
-        band.iter()
-            .for_each(|plane| numbers.extend_from_slice(plane));
-        numbers.extend_from_slice(pending);
+        for plane in self.band_planes() {
+            short::append(pool, plane);
+        }
+        short::append(pool, self.pending.stored());
         Checkpoint {
             order: self.order,
             done: self.done,
             complex: self.is_complex(),
-            numbers,
+            numbers: start..pool.len(),
         }
     }
 
@@ -42,17 +41,25 @@ pub(crate) struct Checkpoint {
     order: usize,
     done: usize,
     complex: bool,
-    /// The triangle by planes, the diagonal, the off-diagonals by planes, and
-    /// the pending pair if there is one.
-    numbers: Vec<f64>,
+    /// Where the pool holds the triangle by planes, the diagonal, the
+    /// off-diagonals by planes, and the pending pair if there is one.
+    numbers: Range<usize>,
 }
 
 impl Checkpoint {
-    /// A run that goes on from here.
-    pub fn resume(&self) -> ReductionRun {
+    /// Numbers all checkpoints of a run take that divides its columns into
+    /// `shares`: the triangle left is (1 − k/shares)² of the whole.
+    pub fn numbers_of_all(order: usize, planes: usize, shares: usize) -> usize {
+        let triangles = (1..=shares).map(|left| left * left).sum::<usize>();
+        let triangle = order * (order + 1) / 2 + order;
+        planes * (triangle * triangles / (shares * shares) + shares * 6 * order)
+    }
+
+    /// A run that goes on from here, its numbers taken from `pool`.
+    pub fn resume(&self, pool: &[f64]) -> ReductionRun {
         let (order, done) = (self.order, self.done);
         let stride = order + order % 2;
-        let mut rest = &self.numbers[..];
+        let mut rest = &pool[self.numbers.clone()];
         let mut next = |length: usize| {
             let (taken, later) = rest.split_at(length);
             rest = later;
@@ -92,10 +99,5 @@ impl Checkpoint {
             run.settle(col);
         }
         run
-    }
-
-    /// Bytes held.
-    pub fn approx_bytes(&self) -> usize {
-        8 * self.numbers.len()
     }
 }

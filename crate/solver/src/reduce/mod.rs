@@ -124,15 +124,17 @@ pub fn reduce(
     if rounded.metric.is_some() && listening == Listening::Yes {
         record_scaling(rounded, recorder, Totals::of_matrix(&rounded.matrix));
     }
-    let (mut run, factor) = match &rounded.metric {
-        None => (ReductionRun::new(&rounded.matrix), None),
+    let (form, factor) = match &rounded.metric {
+        None => (None, None),
         Some(metric_matrix) => {
             let factor = cholesky(metric_matrix).map_err(ReduceError::Metric)?;
             let form = metric::standard_form(&rounded.matrix, &factor);
             let (_, factor) = metric::same_kind(&form, &factor);
-            (ReductionRun::new(&form), Some(factor))
+            (Some(form), Some(factor))
         }
     };
+    let mut run = ReductionRun::new(form.as_ref().unwrap_or(&rounded.matrix));
+    drop(form);
     let mut gauge = Gauge::new(listening);
     if let Some(factor) = &factor {
         recorder.record(Event::Metric { factor, run: &run }, gauge.read(&run));

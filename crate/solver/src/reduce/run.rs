@@ -9,7 +9,7 @@ use super::pending::Pending;
 use super::reflector::{self, Formed};
 use crate::matrix::lanes::Lanes;
 use crate::matrix::norms::{norm2, power_of_two};
-use crate::matrix::Dense;
+use crate::matrix::{short, Dense};
 use nalgebra::DMatrix;
 
 /// A reduction between two reflectors.
@@ -57,7 +57,8 @@ impl ReductionRun {
         let padded = |plane: &DMatrix<f64>| {
             let mut copy = vec![0.0; stride * stride];
             for (col, source) in plane.as_slice().chunks_exact(order.max(1)).enumerate() {
-                copy[col * stride + col..col * stride + order].copy_from_slice(&source[col..]);
+                let target = &mut copy[col * stride + col..col * stride + order];
+                short::copy(target, &source[col..]);
             }
             copy
         };
@@ -182,14 +183,14 @@ impl ReductionRun {
             (first - 1) * self.stride + first..first * self.stride - self.stride + self.order;
         let target = first..self.order;
         let tau = formed.scalar;
-        x.re[target.clone()].copy_from_slice(&self.re[source.clone()]);
+        short::copy(&mut x.re[target.clone()], &self.re[source.clone()]);
         if self.im.is_empty() {
             pass::real(&mut self.re, self.stride, first, v.re, w.re, x.re, y.re);
             let inner = dot(&x.re[first..], &y.re[first..]);
             let share = 0.5 * tau * tau * inner;
             scale_and_subtract(tau, &mut y.re[first..], share, &x.re[first..]);
         } else {
-            x.im[target].copy_from_slice(&self.im[source]);
+            short::copy(&mut x.im[target], &self.im[source]);
             let planes = Planes {
                 re: &mut self.re,
                 im: &mut self.im,
