@@ -108,15 +108,22 @@ const REDUCTION_CHECKPOINTS: usize = 6;
 /// Orders below this replay the whole reduction at once.
 const SMALLEST_CHECKPOINTED: usize = 96;
 
+/// A state from which the ledger replays.
+#[derive(Clone, Debug)]
+pub(super) enum Stored {
+    /// Of the reduction.
+    Reduction(Checkpoint),
+    /// Of the iteration: diagonal, then off-diagonal.
+    Iteration(Span),
+}
+
 /// The record of one run.
 #[derive(Clone, Debug, Default)]
 pub struct Ledger {
     entries: Vec<Entry>,
     pool: Vec<f64>,
-    /// States of the reduction, each with the number of entries before it.
-    pub(super) reductions: Vec<(usize, Checkpoint)>,
-    /// States of the iteration, diagonal before off-diagonal, each with the number of entries before it.
-    pub(super) tridiagonals: Vec<(usize, Span)>,
+    /// Stored states in order, each with the number of entries before it.
+    pub(super) states: Vec<(usize, Stored)>,
     /// Where in the pool each off-diagonal's present value is.
     off_diagonal_at: Vec<usize>,
     sweeps: usize,
@@ -161,7 +168,7 @@ impl Ledger {
     /// start of the run they belong to (for a pair, C), in units in the last
     /// place of the Frobenius norm there. `None` for entries before it.
     pub fn drift(&self, entry: usize) -> Option<Drift> {
-        let (start, _) = self.reductions.first()?;
+        let (start, _) = self.states.first()?;
         let present = self.entries.get(entry)?.totals;
         if entry + 1 < *start {
             return None;
@@ -222,13 +229,15 @@ impl Ledger {
 
     fn checkpoint_reduction(&mut self, run: &ReductionRun) {
         let checkpoint = run.checkpoint(&mut self.pool);
-        self.reductions.push((self.entries.len(), checkpoint));
+        self.states
+            .push((self.entries.len(), Stored::Reduction(checkpoint)));
     }
 
     fn checkpoint_iteration(&mut self, tridiagonal: &Tridiagonal) {
         let mut stored = self.copy(&tridiagonal.diagonal);
         stored.length += self.copy(&tridiagonal.off_diagonal).length;
-        self.tridiagonals.push((self.entries.len(), stored));
+        self.states
+            .push((self.entries.len(), Stored::Iteration(stored)));
     }
 
     fn sweep(&mut self, step: SweepStep, tridiagonal: &Tridiagonal) -> Act {

@@ -1,6 +1,7 @@
 //! The state after any entry, computed again from the nearest checkpoint by the
 //! run's own steps, hence bit for bit the run's.
 
+use super::book::Stored;
 use super::{Act, Ledger};
 use crate::iterate;
 use crate::matrix::Dense;
@@ -69,34 +70,34 @@ impl Ledger {
             return Err(ReplayError::NoSuchEntry { entry, entries });
         }
         let wanted = entry + 1;
-        if let Some((after, stored)) = nearest(&self.tridiagonals, wanted) {
-            let (diagonal, off_diagonal) = self.numbers(*stored).split_at(self.order());
-            let mut state = Tridiagonal {
-                diagonal: diagonal.to_vec(),
-                off_diagonal: off_diagonal.to_vec(),
-            };
-            for entry in &self.entries()[*after..wanted] {
-                match &entry.act {
-                    Act::Sweep { step, .. } => iterate::repeat(&mut state, *step),
-                    Act::Deflation(deflation) => state.off_diagonal[deflation.index] = 0.0,
-                    _ => {}
-                }
-            }
-            return Ok(State::Tridiagonal(state));
-        }
-        let Some((after, run)) = nearest(&self.reductions, wanted) else {
+        // The last stored state at or before the wanted number of entries.
+        let before = self.states.partition_point(|(after, _)| *after <= wanted);
+        let Some((after, stored)) = before.checked_sub(1).and_then(|at| self.states.get(at)) else {
             return Err(ReplayError::BeforeReduction { entry });
         };
-        let mut run = run.resume(self.pool());
-        for _ in *after..wanted {
-            run.step();
+        match stored {
+            Stored::Reduction(checkpoint) => {
+                let mut run = checkpoint.resume(self.pool());
+                for _ in *after..wanted {
+                    run.step();
+                }
+                Ok(State::Matrix(run.matrix()))
+            }
+            Stored::Iteration(band) => {
+                let (diagonal, off_diagonal) = self.numbers(*band).split_at(self.order());
+                let mut state = Tridiagonal {
+                    diagonal: diagonal.to_vec(),
+                    off_diagonal: off_diagonal.to_vec(),
+                };
+                for entry in &self.entries()[*after..wanted] {
+                    match &entry.act {
+                        Act::Sweep { step, .. } => iterate::repeat(&mut state, *step),
+                        Act::Deflation(deflation) => state.off_diagonal[deflation.index] = 0.0,
+                        _ => {}
+                    }
+                }
+                Ok(State::Tridiagonal(state))
+            }
         }
-        Ok(State::Matrix(run.matrix()))
     }
-}
-
-/// The last checkpoint at or before `wanted` entries.
-fn nearest<T>(checkpoints: &[(usize, T)], wanted: usize) -> Option<&(usize, T)> {
-    let after = checkpoints.partition_point(|(entries, _)| *entries <= wanted);
-    checkpoints.get(after.checked_sub(1)?)
 }
