@@ -303,20 +303,29 @@ fn largest(typed: &ExactMatrix, weights: &[i32]) -> i32 {
     found.unwrap_or(0)
 }
 
-/// D·typed·D · 2^−scale with every entry to nearest.
+/// D·typed·D · 2^−scale with every entry to nearest; `typed` is Hermitian.
 fn rounded(typed: &ExactMatrix, scale: i32, weights: &[i32]) -> Result<Dense, FrameError> {
     let order = typed.order();
     let mut bad = false;
-    let mut plane = |part: &dyn Fn(usize, usize) -> f64| {
-        let plane = DMatrix::from_fn(order, order, part);
-        bad |= plane.iter().any(|x| !x.is_finite());
+    // The lower triangle, mirrored: reading an exact number costs far more than
+    // copying a double.
+    let mut plane = |part: &dyn Fn(usize, usize) -> f64, sign: f64| {
+        let mut plane = DMatrix::zeros(order, order);
+        for j in 0..order {
+            for i in j..order {
+                let entry = part(i, j);
+                bad |= !entry.is_finite();
+                plane[(j, i)] = sign * entry;
+                plane[(i, j)] = entry;
+            }
+        }
         plane
     };
     let power = |i: usize, j: usize| weights[i] + weights[j] - scale;
-    let re = plane(&|i, j| nearest(typed.re(i, j), power(i, j)));
+    let re = plane(&|i, j| nearest(typed.re(i, j), power(i, j)), 1.0);
     let im = typed
         .is_complex()
-        .then(|| plane(&|i, j| nearest(typed.im(i, j), power(i, j))));
+        .then(|| plane(&|i, j| nearest(typed.im(i, j), power(i, j)), -1.0));
     if bad {
         return Err(FrameError::NotFinite);
     }
