@@ -19,6 +19,11 @@ use dashu_ratio::RBig;
 /// More terms than this are refused: products of sums multiply their number.
 const MAX_TERMS: usize = 64;
 
+/// Bits that the factors of a sum may have together. A product of two sums forms
+/// thousands of them, and a greatest common divisor for each: at the bound of a
+/// single one that would take seconds.
+const MAX_SUM_BITS: usize = 2 * MAX_BITS;
+
 /// One term c·√d·π^k.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub(super) struct Term {
@@ -193,12 +198,21 @@ impl Terms {
             } else {
                 self.0[i].factor = factor;
             }
-            return Ok(());
+            return self.limited();
         }
         if self.0.len() == MAX_TERMS {
             return Err(ArithmeticError::TooLarge);
         }
         self.0.push(term);
+        self.limited()
+    }
+
+    fn limited(&self) -> Result<(), ArithmeticError> {
+        let bits =
+            |term: &Term| term.factor.numerator().bit_len() + term.factor.denominator().bit_len();
+        if self.0.iter().map(bits).sum::<usize>() > MAX_SUM_BITS {
+            return Err(ArithmeticError::TooLarge);
+        }
         Ok(())
     }
 
