@@ -1,6 +1,6 @@
 //! The fuzz targets over their kept corpus, and over small changes of it: the
-//! short run that needs no fuzzer. The long one is
-//! `RUSTC_BOOTSTRAP=1 cargo fuzz run --fuzz-dir tests/fuzz TARGET`.
+//! run that needs no fuzzer. A short one with it is `cargo page test fuzz`, a long
+//! one `RUSTC_BOOTSTRAP=1 cargo fuzz run --fuzz-dir tests/fuzz TARGET`.
 
 use std::fs;
 use std::path::Path;
