@@ -2,7 +2,7 @@
 //! accurate products. They stand here, and not with the proof that uses them,
 //! to be compiled for speed with the kernels.
 //!
-//! Sums are taken in [`LANES`] interleaved parts, combined pairwise at the end:
+//! Sums are taken in four interleaved parts, combined pairwise at the end:
 //! one fixed order, natively and as wasm. A sum of k ≥ 1 terms passes through
 //! fewer than k additions.
 //!
