@@ -8,10 +8,10 @@ use crate::compressed;
 use crate::layout::Layout;
 
 /// All that a first visit loads, compressed, in bytes: what it weighs today and
-/// 1 % more, so that it cannot grow unseen. The aim is 500 kB.
-const PAGE_BUDGET: u64 = 539_000;
+/// 3 % more, so that it cannot grow unseen but another compiler may differ. The aim is 500 kB.
+const PAGE_BUDGET: u64 = 553_000;
 /// The module alone, compressed, in bytes: likewise. The aim is 250 kB.
-const MODULE_BUDGET: u64 = 408_000;
+const MODULE_BUDGET: u64 = 419_000;
 
 /// Measures the served files as they are sent. The script that keeps them for
 /// offline use is counted too.
