@@ -8,6 +8,7 @@
 
 use crate::matrix::kernels::{adjoint_product, product, DEPTH};
 use crate::matrix::norms::norm2;
+use crate::matrix::passes::subtract_multiple;
 use crate::matrix::Dense;
 use crate::pairs::Approximation;
 use crate::rounded::Rounded;
@@ -157,10 +158,7 @@ fn subtract_scaled(residual: &mut Dense, weighted: &Dense, values: &[f64]) {
         let columns = source.as_slice().chunks_exact(rows.max(1));
         let targets = target.as_mut_slice().chunks_exact_mut(rows.max(1));
         for ((target, source), value) in targets.zip(columns).zip(values) {
-            target
-                .iter_mut()
-                .zip(source)
-                .for_each(|(r, y)| *r -= value * y);
+            subtract_multiple(target, *value, source);
         }
     };
     subtract(&mut residual.re, &weighted.re);

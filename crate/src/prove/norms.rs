@@ -60,21 +60,22 @@ impl Norms {
 /// Bounds on the 2-norm of each column, and on the Frobenius norm: one pass,
 /// where the rest of [`Norms`] is not needed.
 pub(super) fn column_norms(matrix: &Dense) -> (Vec<Upper>, Upper) {
-    let columns: Vec<Upper> = (0..matrix.cols())
-        .map(|k| {
-            let re = column_square(&matrix.re, k);
-            match &matrix.im {
-                None => re.sqrt(),
-                Some(im) => re.plus(column_square(im, k)).sqrt(),
-            }
-        })
-        .collect();
+    let columns: Vec<Upper> = (0..matrix.cols()).map(|k| column_norm(matrix, k)).collect();
     let frobenius = square_sum_up(columns.iter().map(|norm| norm.get())).sqrt();
     (columns, frobenius)
 }
 
+/// ≥ the 2-norm of column k.
+pub(super) fn column_norm(matrix: &Dense, k: usize) -> Upper {
+    let re = column_square(&matrix.re, k);
+    match &matrix.im {
+        None => re.sqrt(),
+        Some(im) => re.plus(column_square(im, k)).sqrt(),
+    }
+}
+
 /// A bound on the sum of squares of column k of a plane.
-pub(super) fn column_square(plane: &DMatrix<f64>, k: usize) -> Upper {
+fn column_square(plane: &DMatrix<f64>, k: usize) -> Upper {
     let (sum, is_zero) = square_sum(column(plane, k));
     bound_square_sum(sum, plane.nrows(), is_zero)
 }

@@ -26,7 +26,7 @@ use crate::num::Upper;
 use nalgebra::DMatrix;
 
 use super::frame::Frame;
-use super::norms::{column_square, Norms, Rounding};
+use super::norms::{column_norm, Norms, Rounding};
 use super::products::{hermitian_gram, watched_product, Cancelled, Watch};
 
 /// What the linear statements need.
@@ -215,15 +215,6 @@ fn column_loss(rounding: Rounding, size: Upper, vectors: &Norms) -> Vec<Upper> {
 /// √Σ xₖ² of bounds.
 pub(super) fn root_sum_square(bounds: &[Upper]) -> Upper {
     square_sum_up(bounds.iter().map(|bound| bound.get())).sqrt()
-}
-
-/// ≥ the 2-norm of column k.
-pub(super) fn column_norm(matrix: &Dense, k: usize) -> Upper {
-    let re = column_square(&matrix.re, k);
-    match &matrix.im {
-        None => re.sqrt(),
-        Some(im) => re.plus(column_square(im, k)).sqrt(),
-    }
 }
 
 /// targetₖ ← targetₖ − value·sourceₖ; returns a bound on ‖fl(value·sourceₖ)‖₂.
