@@ -125,20 +125,6 @@ pub fn gamma(k: usize) -> Upper {
     }
 }
 
-/// A bound on the sum of the given non-negative doubles.
-///
-/// Plain summation of k terms in any order errs by at most γₖ₋₁ times the sum
-/// (Higham 2002, section 4.2), and sums do not underflow.
-pub fn sum_up(terms: impl Iterator<Item = f64>) -> Upper {
-    let mut count = 0usize;
-    let mut sum = 0.0f64;
-    for term in terms {
-        sum += term;
-        count += 1;
-    }
-    stretched(Upper::of(sum), count)
-}
-
 /// A bound on Σ xₖ².
 ///
 /// k squares and their sum: factor 1 + γₖ, and each square below the normal
@@ -167,6 +153,9 @@ pub fn bound_square_sum(computed: f64, count: usize, is_zero: bool) -> Upper {
 }
 
 /// sum / (1 − k·u), for a computed sum that passed through k roundings.
+///
+/// Plain summation of k terms in any order errs by at most γₖ₋₁ times the sum
+/// (Higham 2002, section 4.2), and sums do not underflow.
 pub fn stretched(sum: Upper, roundings: usize) -> Upper {
     sum.over((1.0 - roundings as f64 * UNIT).next_down())
 }
@@ -210,7 +199,7 @@ mod tests {
                 sum = &sum + &exact(x.abs());
                 squares = &squares + &(&exact(x) * &exact(x));
             }
-            prop_assert!(exact(sum_up(terms.iter().map(|x| x.abs())).get()) >= sum, "{terms:?}");
+            prop_assert!(exact(stretched(Upper::of(terms.iter().map(|x| x.abs()).sum()), terms.len()).get()) >= sum, "{terms:?}");
             prop_assert!(exact(square_sum_up(terms.iter().copied()).get()) >= squares, "{terms:?}");
         }
 
